@@ -1,0 +1,141 @@
+"""The numbers of one document: read once each, under the limits that hold for the document as a whole.
+
+Most numbers are integers or names of symbols, so these take a short way that skips the grammar; equal texts are
+read once and share one value.  A reader lives as long as the reading of its document.
+"""
+
+import re
+from collections.abc import Sequence
+from fractions import Fraction
+from math import lcm
+
+from app.errors import NumberFault
+from app.exact.independence import independent_root_count
+from app.exact.limits import WORK_UNITS, Budget
+from app.exact.number import parse_number
+from app.exact.value import Value
+from app.local.faults import Faults
+from app.local.json_reader import WrittenFloat
+from app.local.limits import MAXIMUM_DIGITS, MAXIMUM_ROOTS, MAXIMUM_TERMS, MAXIMUM_WORK
+
+_PLAIN_INTEGER = re.compile(r"-?[0-9]{1,18}")
+_TOO_LARGE = 10**MAXIMUM_DIGITS
+_A_NUMBER = 'an exact number, written as a string such as "1/3"'
+
+
+class Numbers:
+    """Reader of the numbers of one document; every fault goes to ``faults``."""
+
+    def __init__(self, symbols: Sequence[str], faults: Faults) -> None:
+        self._faults = faults
+        self._symbols = frozenset(symbols)
+        self._known: dict[str, Value] = {}
+        self._terms_left = MAXIMUM_TERMS
+        self._work_left = MAXIMUM_WORK
+        self._radicals: set[int] = set()
+
+    def read(self, data: object, at: str) -> Value | None:
+        """The value of one number of the document, or None after noting what is wrong with it."""
+        text = self._text(data, at)
+        if text is None:
+            return None
+        value = self._known.get(text)
+        if value is None:
+            value = self._parsed(text, at)
+            if value is None:
+                return None
+            self._known[text] = value
+        return self._counted(value, at)
+
+    def read_position(self, data: object, at: str) -> Value | None:
+        """The same for a position; its symbols do not count as used in a number."""
+        text = self._text(data, at)
+        value = None if text is None else self._parsed(text, at)
+        return None if value is None else self._counted(value, at)
+
+    def symbols_used(self) -> frozenset[str]:
+        """Symbols that occur in the numbers read so far, positions left out."""
+        return frozenset().union(*(value.symbols() for value in self._known.values()))
+
+    def check_whole(self) -> None:
+        """Note faults of the numbers as a whole: too many independent square roots, too long a common denominator.
+
+        The bound on the common denominator bounds the integers in every sum of eigenvalues.
+        """
+        if independent_root_count(self._radicals, stop_above=MAXIMUM_ROOTS) > MAXIMUM_ROOTS:
+            self._faults.add(
+                "",
+                f"The numbers of the document hold more than {MAXIMUM_ROOTS} independent square roots",
+                f"at most {MAXIMUM_ROOTS}, i not counted",
+            )
+        common = 1
+        for value in self._known.values():
+            for coefficient in value.terms.values():
+                if coefficient.__class__ is Fraction:
+                    common = lcm(common, coefficient.denominator)
+            if common >= _TOO_LARGE:
+                message = f"The common denominator of all numbers has more than {MAXIMUM_DIGITS} digits"
+                self._faults.add("", message, f"at most {MAXIMUM_DIGITS} digits")
+                return
+
+    def _text(self, data: object, at: str) -> str | None:
+        if isinstance(data, str):
+            return data
+        if isinstance(data, bool) or not isinstance(data, (int, float)):
+            self._faults.wrong_type(at, data, _A_NUMBER)
+        elif isinstance(data, float):
+            literal = data.literal if isinstance(data, WrittenFloat) else repr(data)
+            example = literal if len(literal) <= 30 and "e" not in literal.lower() else "0.5"
+            message = "A JSON number with a point or an exponent is not exact"
+            self._faults.add(at, message, f'write it as a string, such as "{example}"')
+        elif not -_TOO_LARGE < data < _TOO_LARGE:
+            self._faults.add(
+                at,
+                f"The integer has more than {MAXIMUM_DIGITS} digits",
+                f"an integer of at most {MAXIMUM_DIGITS} digits",
+            )
+        else:
+            return str(data)
+        return None
+
+    def _parsed(self, text: str, at: str) -> Value | None:
+        if _PLAIN_INTEGER.fullmatch(text):
+            return Value.rational(int(text))
+        if text in self._symbols:
+            return Value.symbol(text)
+        budget = Budget(min(WORK_UNITS, self._work_left))
+        granted = budget.left
+        try:
+            value = parse_number(text, self._symbols, budget)
+        except NumberFault as fault:
+            self._faults.add(at, f"{fault.message}, at character {fault.position + 1}", fault.expected)
+            return None
+        finally:
+            self._work_left -= granted - budget.left
+        self._radicals.update(value.radicals())
+        return value
+
+    def _counted(self, value: Value, at: str) -> Value | None:
+        """The value, unless the document's numbers together have become too long."""
+        if self._terms_left < 0:
+            return None
+        self._terms_left -= len(value.terms)
+        if self._terms_left >= 0:
+            return value
+        self._faults.add(
+            at,
+            f"Here the numbers of the document have more than {MAXIMUM_TERMS} terms together",
+            f"at most {MAXIMUM_TERMS} terms; later numbers were not read",
+        )
+        return None
+
+
+def read_power(text: str) -> Fraction | None:
+    """A positive rational, written "2" or "5/2" (or otherwise in the number grammar); None for anything else."""
+    try:
+        power = parse_number(text, ()).as_rational()
+    except NumberFault:
+        return None
+    return power if power is not None and power > 0 else None
+
+
