@@ -5,10 +5,12 @@ integers are looked at after each step, and one step can at most double them.
 """
 
 from fractions import Fraction
+from math import comb
 
 from app.exact.limits import (
     MAX_POWER,
     MAX_PRODUCT_OF_ROOTS,
+    MAX_ROOTS,
     Budget,
     OverLimit,
     check_coefficient,
@@ -19,7 +21,8 @@ from app.exact.value import ONE, Rational, Value
 
 def product(first: Value, second: Value, budget: Budget) -> Value:
     """The product, or OverLimit; before multiplying, degrees are added and the work is taken from the budget."""
-    _check_degrees(first, second)
+    if not (first.is_rational or second.is_rational):
+        _check_degrees(first, second)
     budget.spend(_work(first, second))
     result = first * second
     check_size(result)
@@ -32,14 +35,17 @@ def power(base: Value, exponent: int, budget: Budget) -> Value:
     Constants and single terms by repeated squaring.  Sums with symbols one factor after the other: with sparse
     sums that forms fewer elementary products than squaring (Σ t·|P^k| against |P^(n/2)|²).
     """
-    squaring = base.is_constant or len(base.terms) <= 1
     result = ONE
-    if squaring:
+    if base.is_constant or len(base.terms) <= 1:
         for bit in bin(exponent)[2:]:
             result = product(result, result, budget)
             if bit == "1":
                 result = product(result, base, budget)
         return result
+    if all(sum(degree for _, degree in monomial) <= 1 for monomial, _ in base.terms):
+        # A power of a sum of degree 1 has a term for every way to share the exponent among the monomials.
+        monomials = len({monomial for monomial, _ in base.terms})
+        check_term_count(comb(exponent + monomials - 1, exponent))
     for _ in range(exponent):
         result = product(result, base, budget)
     return result
@@ -47,10 +53,9 @@ def power(base: Value, exponent: int, budget: Budget) -> Value:
 
 def inverse(constant: Value, budget: Budget) -> Value:
     """The inverse of a non-zero constant, or OverLimit."""
-    count = len(constant.terms)
-    budget.spend(1 if count == 1 else 20 * count)
-    if len(constant.radicals()) > 1 or count > 1:
-        budget.spend(_inverse_work(constant))
+    if len(constant.terms) > 1:
+        roots = min(len(constant.radicals()), MAX_ROOTS + 1)  # with more the inverse refuses by itself
+        budget.spend(2 * 4**roots)
     result = constant.inverse()
     check_size(result)
     return result
@@ -64,13 +69,6 @@ def check_size(value: Value) -> None:
         check_coefficient(coefficient)
         if abs(radical) > MAX_PRODUCT_OF_ROOTS:
             raise OverLimit("A product of square roots goes over 10^36 under the root")
-
-
-def _inverse_work(constant: Value) -> int:
-    """Units for an inverse with k roots and i: all conjugate products together, weighted by the final lengths."""
-    # At most 2^(k+1) radicals with k ≤ 6, or the inverse refuses by itself.
-    conjugates: int = 2 ** min(7, len(constant.radicals()))
-    return 2 * conjugates * conjugates
 
 
 def _check_degrees(first: Value, second: Value) -> None:
@@ -95,7 +93,7 @@ def _degree_ranges(value: Value) -> dict[str, tuple[Rational, Rational]]:
 
 
 def _work(first: Value, second: Value) -> int:
-    """Elementary products, weighted by the lengths of the integers: one unit is about a microsecond."""
+    """Elementary products, weighted by the lengths of the integers."""
     count = len(first.terms) * len(second.terms)
     if count <= 1:
         return 1

@@ -13,11 +13,11 @@ MAX_POWER = 64
 MAX_RADICAND = 10**18
 MAX_PRODUCT_OF_ROOTS = 10**36  # so that sqrt(p/q), which is sqrt(p*q)/q, is always within it
 MAX_DIGITS = 400
-MAX_ROOTS_IN_INVERSE = 6
+MAX_ROOTS = 6
 MAX_RAMIFICATION = 24
 
-WORK_UNITS = 300_000
-"""Elementary products in one number; one takes about a microsecond."""
+WORK_UNITS = 120_000
+"""Elementary products in one number; one takes about two microseconds."""
 
 _TOO_LARGE = 10**MAX_DIGITS
 

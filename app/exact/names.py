@@ -6,12 +6,13 @@ A name is made of Unicode letters, the digits 0–9 after the first place, and `
 import re
 import unicodedata
 
+from app.exact.limits import MAX_CHARACTERS
+
 RESERVED = frozenset({"i", "sqrt", "infinity"})
 
 _ASCII_NAME = re.compile(r"[A-Za-z_][A-Za-z0-9_]*")
 _ASCII_DIGITS = frozenset("0123456789")
 _NUMBER = re.compile(r"[0-9]+(?:\.[0-9]+)?(?:[eE][+-]?[0-9]+)?")
-_LONGEST_TEXT = 20_000
 
 
 def normalised(name: str) -> str:
@@ -60,12 +61,12 @@ def end_of_name(text: str, start: int) -> int:
 def names_in(text: str) -> tuple[str, ...]:
     """Names of symbols in a text in order of first appearance, reserved words left out; never raises.
 
-    Only the first 20,000 characters are looked at; a longer text is no number anyway.
+    Only the first MAX_CHARACTERS characters are looked at; a longer text is no number anyway.
 
     >>> names_in("1/2*b + sqrt(2)*a - b^2")
     ('b', 'a')
     """
-    text = text[:_LONGEST_TEXT]
+    text = text[:MAX_CHARACTERS]
     found: dict[str, None] = {}
     place = 0
     while place < len(text):

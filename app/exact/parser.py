@@ -19,12 +19,14 @@ from fractions import Fraction
 
 from app.errors import NumberFault
 from app.exact import bounded
+from app.exact.independence import independent_root_count
 from app.exact.limits import (
     MAX_CHARACTERS,
     MAX_DIGITS,
     MAX_NESTING,
     MAX_POWER,
     MAX_RAMIFICATION,
+    MAX_ROOTS,
     Budget,
     OverLimit,
     check_coefficient,
@@ -35,6 +37,8 @@ from app.exact.tokens import Token, tokens_of
 from app.exact.value import IMAGINARY_UNIT, Key, Rational, Value, add_term
 from app.exact.writing import write_number
 
+_ADDITIVE = frozenset("+-")
+_MULTIPLICATIVE = frozenset("*/")
 _EXAMPLE = "an exact number, for example 2/3 or sqrt(2)"
 
 
@@ -49,6 +53,7 @@ def parse_number(text: str, symbols: Collection[str] = (), budget: Budget | None
     """
     parser = _Parser(text, symbols, None, budget)
     value = parser.whole()
+    parser.check_roots(value)
     parser.check_written_length(value)
     return value
 
@@ -69,6 +74,7 @@ def parse_laurent(
         return {}
     parser = _Parser(text, symbols, coordinate, budget)
     whole = parser.whole()
+    parser.check_roots(whole)
     collected: dict[Fraction, dict[Key, Rational]] = {}
     for (monomial, radical), coefficient in whole.terms.items():
         power = Fraction(-dict(monomial).get(coordinate, 0))
@@ -99,25 +105,38 @@ class _Parser:
                               MAX_CHARACTERS, "a shorter text")
         self._text = text
         self._tokens = tokens_of(text)
-        self._next = 0
+        self._place = 0
         self._symbols = symbols
         self._coordinate = coordinate
         self._budget = budget if budget is not None else Budget()
         self._nesting = 0
         self._first_places: dict[Key, int] = {}
+        self._roots: list[tuple[int, int]] = []  # radicals that came up, with their places
+        self._look()
 
     def whole(self) -> Value:
         """The value of the whole text."""
-        if self._peek().kind == "end":
+        if self._at_end:
             raise NumberFault("There is no number here", 0, _EXAMPLE)
         value = self._sum()
-        if self._peek().kind != "end":
+        if not self._at_end:
             raise self._unexpected_after_value()
         return value
 
     def place_of(self, key: Key) -> int:
         """Where the first term of the outermost sum begins that contributes to a term of the result."""
         return self._first_places.get(key, 0)
+
+    def check_roots(self, value: Value) -> None:
+        """A document may have MAX_ROOTS independent square roots, so one number may not have more."""
+        if len(self._roots) <= MAX_ROOTS or independent_root_count(value.radicals(), MAX_ROOTS) <= MAX_ROOTS:
+            return
+        seen: set[int] = set()
+        for radical, position in self._roots:
+            seen.add(radical)
+            if independent_root_count(seen, MAX_ROOTS) > MAX_ROOTS:
+                raise NumberFault(f"There are more than {MAX_ROOTS} independent square roots; this is one too many",
+                                  position, f"at most {MAX_ROOTS} independent square roots")
 
     def check_written_length(self, value: Value) -> None:
         """What is read must be readable when written again in canonical form."""
@@ -129,24 +148,27 @@ class _Parser:
 
     # --- tokens
 
-    def _peek(self) -> Token:
-        token = self._tokens[self._next]
+    @property
+    def _at_end(self) -> bool:
+        return self._token.kind == "end"
+
+    def _advance(self) -> Token:
+        """Take the next token and look at the one after it."""
+        token = self._token
+        self._place += 1
+        self._look()
+        return token
+
+    def _look(self) -> None:
+        """Set the token ahead, and its sign ("" if it is none)."""
+        self._token = token = self._tokens[self._place]
         if token.kind == "bad":
             raise NumberFault(token.text, token.position, token.expected)
-        return token
-
-    def _take(self) -> Token:
-        token = self._peek()
-        self._next += 1
-        return token
-
-    def _next_is(self, signs: str) -> bool:
-        token = self._peek()
-        return token.kind == "sign" and token.text in signs
+        self._sign = token.text if token.kind == "sign" else ""
 
     def _unexpected_after_value(self) -> NumberFault:
         """The fault of a token that cannot follow a complete value."""
-        token, before = self._peek(), self._tokens[self._next - 1]
+        token, before = self._token, self._tokens[self._place - 1]
         if token.kind == "end":
             return NumberFault("A closing parenthesis is missing at the end", token.position, ")")
         if token.text == ")":
@@ -157,16 +179,16 @@ class _Parser:
 
     def _sum(self) -> Value:
         outermost = self._nesting == 0 and self._coordinate is not None
-        place = self._peek().position
+        place = self._token.position
         first = self._product()
         if outermost:
             self._note(first, place)
-        if not self._next_is("+-"):
+        if self._sign not in _ADDITIVE:
             return first
         collected = dict(first.terms)
-        while self._next_is("+-"):
-            sign = self._take()
-            place = self._peek().position
+        while self._sign in _ADDITIVE:
+            sign = self._advance()
+            place = self._token.position
             value = self._product()
             if outermost:
                 self._note(value, place)
@@ -184,11 +206,11 @@ class _Parser:
 
     def _product(self) -> Value:
         left = self._signed()
-        while self._next_is("*/"):
-            operator = self._take()
-            if operator.text == "*" and self._next_is("*"):
+        while self._sign in _MULTIPLICATIVE:
+            operator = self._advance()
+            if operator.text == "*" and self._sign == "*":
                 raise NumberFault("A power is written with one ^", operator.position, "^")
-            place = self._peek().position
+            place = self._token.position
             right = self._signed()
             if operator.text == "/":
                 right = self._inverse(right, place)
@@ -198,26 +220,26 @@ class _Parser:
 
     def _signed(self) -> Value:
         negative = False
-        while self._next_is("+-"):
-            negative ^= self._take().text == "-"
+        while self._sign in _ADDITIVE:
+            negative ^= self._advance().text == "-"
         value = self._power()
         return -value if negative else value
 
     def _power(self) -> Value:
-        place = self._peek().position
+        place = self._token.position
         base = self._atom()
-        if not self._next_is("^"):
+        if self._sign != "^":
             return base
-        sign = self._take()
-        exponent_place = self._peek().position
+        sign = self._advance()
+        exponent_place = self._token.position
         negative = False
-        while self._next_is("+-"):
-            negative ^= self._take().text == "-"
+        while self._sign in _ADDITIVE:
+            negative ^= self._advance().text == "-"
         exponent = self._atom().as_rational()
         if exponent is None:
             raise NumberFault("An exponent is an integer", exponent_place, "an integer, for example ^2")
-        if self._next_is("^"):
-            raise NumberFault("A power of a power is ambiguous without parentheses", self._peek().position,
+        if self._sign == "^":
+            raise NumberFault("A power of a power is ambiguous without parentheses", self._token.position,
                               "(2^3)^2 or 2^(3^2)")
         return self._raised(base, -exponent if negative else exponent, place, sign.position, exponent_place)
 
@@ -248,6 +270,9 @@ class _Parser:
         """The inverse of a constant, or of a constant times a power of the coordinate."""
         if not divisor:
             raise NumberFault("Division by zero", place, "a divisor that is not zero")
+        number = divisor.as_rational()
+        if number is not None:
+            return Value.rational(1 / number)
         monomials = {monomial for monomial, _ in divisor.terms}
         shift = 0 if len(monomials) > 1 else dict(next(iter(monomials))).get(self._coordinate or "", 0)
         if shift and self._coordinate is not None:
@@ -261,7 +286,7 @@ class _Parser:
             return bounded.inverse(divisor, self._budget)
 
     def _atom(self) -> Value:
-        token = self._take()
+        token = self._advance()
         if token.kind == "number":
             return self._literal(token)
         if token.kind == "name":
@@ -305,15 +330,17 @@ class _Parser:
         return "one of " + ", ".join(map(_short, names[:8])) + (", …" if len(names) > 8 else "")
 
     def _root(self, token: Token) -> Value:
-        if not self._next_is("("):
-            raise NumberFault("sqrt is followed by a parenthesis", self._peek().position, "sqrt(2)")
-        opening = self._take()
-        place = self._peek().position
+        if self._sign != "(":
+            raise NumberFault("sqrt is followed by a parenthesis", self._token.position, "sqrt(2)")
+        opening = self._advance()
+        place = self._token.position
         radicand = self._parenthesised(opening).as_rational()
         if radicand is None:
             raise NumberFault("Square roots are of rational numbers only", place, "a rational number, as in sqrt(2/3)")
         with _At(token.position):
-            return square_root(radicand)
+            value = square_root(radicand)
+        self._roots.extend((radical, token.position) for radical in value.radicals())
+        return value
 
     def _parenthesised(self, opening: Token) -> Value:
         if self._nesting == MAX_NESTING:
@@ -321,9 +348,9 @@ class _Parser:
                               f"at most {MAX_NESTING} levels")
         self._nesting += 1
         value = self._sum()
-        if not self._next_is(")"):
+        if self._sign != ")":
             raise self._unexpected_after_value()
-        self._take()
+        self._advance()
         self._nesting -= 1
         return value
 

@@ -51,15 +51,16 @@ def square_and_rest(number: int) -> tuple[int, int]:
     return square, rest
 
 
-def factors(number: int) -> list[tuple[int, int]]:
+@lru_cache(maxsize=1024)
+def factors(number: int) -> tuple[tuple[int, int], ...]:
     """Prime factors with powers, ascending, of a positive integer up to MAX_PRODUCT_OF_ROOTS."""
     if number > MAX_PRODUCT_OF_ROOTS:
         raise OverLimit("A product of square roots goes over 10^36 under the root")
     if number <= _TRIAL_BOUND:
-        return _factors_by_trial(number)
+        return tuple(_factors_by_trial(number))
     from flint import fmpz
 
-    return sorted((int(prime), int(power)) for prime, power in fmpz(number).factor())
+    return tuple(sorted((int(prime), int(power)) for prime, power in fmpz(number).factor()))
 
 
 def _factors_by_trial(number: int) -> list[tuple[int, int]]:

@@ -5,16 +5,15 @@ comes first in the text.
 """
 
 import re
-from dataclasses import dataclass
-from typing import Literal
+import unicodedata
+from typing import Literal, NamedTuple
 
 from app.exact.names import check_symbol, end_of_name, normalised, shown
 
 Kind = Literal["number", "name", "sign", "bad", "end"]
 
 
-@dataclass(frozen=True, slots=True)
-class Token:
+class Token(NamedTuple):
     """A piece of a number: kind, text (of a bad token: what is wrong), place, and what would be right."""
 
     kind: Kind
@@ -38,7 +37,6 @@ _HINTS = {
     "∞": "an exact number",
     ",": "decimals are written with a point, 1.5",
     ".": "decimals have digits on both sides of one point, 0.5",
-    "*": "an exact number",
     "[": "round parentheses",
     "{": "round parentheses",
     "=": "a number, not an equation",
@@ -89,9 +87,18 @@ def _name(raw: str, place: int) -> Token:
     fault = None if name.isascii() else check_symbol(name)
     if fault is None:
         return Token("name", name, place)
-    # Composed letters are letters; the first character that is no part of a name even alone is the culprit.
-    offset = next((k for k, c in enumerate(raw) if not (c.isalnum() or c == "_")), 0)
-    return Token("bad", fault, place + offset, "a name of letters, digits and _, for example t_1")
+    return Token("bad", fault, place + _first_loose_mark(raw), "a name of letters, digits and _, for example t_1")
+
+
+def _first_loose_mark(raw: str) -> int:
+    """Where the first combining mark stands that normal form C does not make part of a letter; 0 if nowhere."""
+    start = 0  # of the letter that marks may join
+    for offset, character in enumerate(raw):
+        if unicodedata.category(character)[0] != "M":
+            start = offset
+        elif check_symbol(raw[start : offset + 1]) is not None:
+            return offset
+    return 0
 
 
 def _stray(character: str, place: int) -> Token:

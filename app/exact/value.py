@@ -14,12 +14,12 @@ integers are several times faster.
 
 from collections.abc import Iterable, Mapping
 from fractions import Fraction
-from math import gcd
+from math import gcd, lcm
 from types import MappingProxyType
 from typing import Self
 
 from app.exact.independence import coprime_base, independent_root_count
-from app.exact.limits import MAX_ROOTS_IN_INVERSE, OverLimit, check_coefficient
+from app.exact.limits import MAX_ROOTS, OverLimit, check_coefficient
 
 Rational = int | Fraction
 Exponent = int | Fraction
@@ -291,11 +291,11 @@ class Value:
         """The inverse of a non-zero constant.
 
         Method: multiply by conjugates, one square root at a time; after each the product contains that root no
-        more, and at the end it is the norm, a rational number.  With k independent roots the work is at most
-        about 2·4^k products of rational numbers.
+        more, and at the end it is the norm, a rational number.  With k independent roots, i counted, the work is
+        at most about 2·4^k products of integers.
 
         Raises ZeroDivisionError for 0, ValueError when symbols occur, OverLimit when more than
-        MAX_ROOTS_IN_INVERSE independent roots (i not counted) occur, or an integer gets too long.
+        MAX_ROOTS independent roots (i not counted) occur, or an integer gets too long.
         """
         if not self._terms:
             raise ZeroDivisionError("Division by zero")
@@ -303,7 +303,10 @@ class Value:
             raise ValueError("Only constants have an inverse here")
         if len(self._terms) == 1:
             return self._inverse_of_one_term()
-        numerator, norm = ONE, self
+        # With the denominators cleared everything below is a product of integers.
+        scale = lcm(*(coefficient.denominator for coefficient in self._terms.values()))
+        check_coefficient(scale)
+        numerator, norm = ONE, self._scaled(scale)
         for divisor in _root_generators(radical for _, radical in self._terms):
             conjugate = norm._conjugate(divisor)
             if conjugate == norm:
@@ -311,7 +314,7 @@ class Value:
             numerator, norm = numerator * conjugate, norm * conjugate
             for coefficient in (*numerator._terms.values(), *norm._terms.values()):
                 check_coefficient(coefficient)
-        return numerator._scaled(1 / Fraction(norm._terms[_UNIT]))
+        return numerator._scaled(Fraction(scale, norm._terms[_UNIT]))
 
     def _inverse_of_one_term(self) -> "Value":
         """1/(c·√d) = √d/(c·d), for negative d too, because (i√|d|)² = d."""
@@ -355,8 +358,8 @@ def _root_generators(radicals: Iterable[Radical]) -> list[int]:
     caller skips sign changes that change nothing.
     """
     found = set(radicals)
-    if independent_root_count(found, stop_above=MAX_ROOTS_IN_INVERSE) > MAX_ROOTS_IN_INVERSE:
-        raise OverLimit(f"This is the inverse of a sum with more than {MAX_ROOTS_IN_INVERSE} independent square roots")
+    if independent_root_count(found, stop_above=MAX_ROOTS) > MAX_ROOTS:
+        raise OverLimit(f"This is the inverse of a sum with more than {MAX_ROOTS} independent square roots")
     return [*([-1] if any(radical < 0 for radical in found) else []), *coprime_base(found)]
 
 
