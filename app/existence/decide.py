@@ -90,22 +90,23 @@ class _Judge:
         reduction = self.reduction
         if reduction.outcome == "negative":
             return self._no(
-                f"The dimension vector is not a root: {self._count()} lead to a negative dimension, "
-                f"so no irreducible {self.thing} exists.",
+                f"{self._lead()} to a negative dimension, so the dimension vector is not a root and no irreducible "
+                f"{self.thing} exists.",
                 NotARoot(self.steps, reduction.dimension, "negative entry"),
             )
         if reduction.outcome == "disconnected" or not self._is_root():
+            end = "with disconnected support" if reduction.outcome == "disconnected" else "that is no root"
             return self._no(
-                f"The dimension vector is not a root: {self._count()} lead to a vector with disconnected support, "
-                f"so every {self.thing} with these data is a direct sum.",
+                f"{self._lead()} to a vector {end}, so the dimension vector is not a root and every {self.thing} "
+                "with these data is reducible.",
                 NotARoot(self.steps, reduction.dimension, "disconnected support"),
             )
         if reduction.blocked is not None:
             return self._split()
         if reduction.outcome == "real":
             return self._yes(
-                f"{self._count().capitalize()} with non-zero parameter lead to rank one: the data are rigid, and the "
-                f"{self.thing} is unique up to isomorphism.",
+                f"{self._lead(' with non-zero parameter')} to rank one: the data are rigid, and the {self.thing} is "
+                "unique up to isomorphism.",
                 "coordinate vector",
             )
         return self._fundamental()
@@ -129,7 +130,7 @@ class _Judge:
         ids = " + ".join(self.quiver.vertices[v].id for v in blocked.vertices)
         vanishes = "is an integer" if self.modulo else "is 0"
         reason = (
-            f"{self._count(blocked.moves_before).capitalize()} lead to a stage where the parameter at {ids} {vanishes} "
+            f"{self._lead(moves=blocked.moves_before)} to a stage where the parameter at {ids} {vanishes} "
             f"while the reflection there would lower the dimension: that vertex splits off, and every {self.thing} "
             "with these data is reducible."
         )
@@ -143,7 +144,7 @@ class _Judge:
         parameters = 2 * p_of(self.quiver, self.quiver.dimension)
         family = f"the irreducible {self.thing}s form a smooth connected family of dimension {parameters}"
         if len(core_groups(self.quiver)) == 1:
-            words = f"{self._count().capitalize()} with non-zero parameter lead to the fundamental set"
+            words = f"{self._lead(' with non-zero parameter')} to the fundamental set"
             if not reduction.moves:
                 words = "The dimension vector lies in the fundamental set"
             return self._yes(f"{words}, and none of the exceptions there applies: {family}.", "fundamental set")
@@ -192,12 +193,14 @@ class _Judge:
             )
         return f"The traces of the residues sum to {value} instead of 0 (Fuchs relation), so no system exists."
 
-    def _count(self, moves: int | None = None) -> str:
+    def _lead(self, qualifier: str = "", moves: int | None = None) -> str:
+        """ "Two core reflections lead", for the moves made so far, with a qualifier before the verb."""
         made = self.reduction.moves if moves is None else self.reduction.moves[:moves]
         number = sum(isinstance(move, CoreMove) for move in made)
         if number == 0:
-            return "no reflections" if not made else "reorderings of eigenvalues alone"
-        return "one core reflection" if number == 1 else f"{number} core reflections"
+            return "The eigenvalues in descending order of multiplicity lead"
+        words = "One core reflection" if number == 1 else f"{number} core reflections"
+        return f"{words}{qualifier} {'leads' if number == 1 else 'lead'}"
 
 
 _OBSTRUCTION_WORDS: dict[Criterion, str] = {

@@ -17,7 +17,7 @@ from app.operations.descent import DescentStep, descent
 from app.roots.build import quiver_of
 from app.roots.dynkin import type_name
 from app.roots.form import p_of, support
-from app.roots.positive import root_class
+from app.roots.positive import RootClass, root_class
 from app.roots.quiver import Quiver
 from app.roots.reduction import Reduction, reduce
 
@@ -67,7 +67,7 @@ class Findings:
     orbits: tuple[OrbitFigure, ...]
     quiver: Quiver | None
     support_type: str | None
-    root_class: str | None
+    root_class: RootClass | None
     p: int | None
     additive: Verdict | None
     multiplicative: Verdict | None
@@ -157,7 +157,7 @@ def _examine_key(key: _Key) -> Findings:
     return examine(key.problem)
 
 
-def _class_of(quiver: Quiver, reduction: Reduction) -> str:
+def _class_of(quiver: Quiver, reduction: Reduction) -> RootClass:
     """Root class read off the reduction; its end is looked at with single reflections where it may still fall."""
     if reduction.outcome in ("negative", "disconnected"):
         return "none"

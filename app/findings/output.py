@@ -1,7 +1,9 @@
 """Findings as JSON data, in the shape of ``types.py``."""
 
+from __future__ import annotations
+
 from collections.abc import Callable
-from typing import cast
+from typing import TYPE_CHECKING
 
 from app import PROGRAM
 from app.exact.number import write_number
@@ -16,15 +18,18 @@ from app.existence.verdict import (
     Verdict,
 )
 from app.findings.findings import Findings
-from app.findings.types import (
-    CertificateJson,
-    FindingsJson,
-    QuiverJson,
-    RootJson,
-    VerdictJson,
-    VertexJson,
-)
 from app.roots.quiver import Quiver
+
+if TYPE_CHECKING:
+    # the types alone: what they are made with takes time to import
+    from app.findings.types import (
+        CertificateJson,
+        FindingsJson,
+        QuiverJson,
+        RootJson,
+        VerdictJson,
+        VertexJson,
+    )
 
 Write = Callable[[Value], str]
 
@@ -48,7 +53,7 @@ def findings_json(findings: Findings) -> FindingsJson:
         "solved": None if solved is None else {"at": solved.at, "value": write(solved.value)},
         "orbits": [{"pole": o.pole, "dimension": o.dimension, "slope": str(o.slope)} for o in findings.orbits],
         "quiver": None if quiver is None else _quiver(quiver, findings.support_type or "", write),
-        "root": None if quiver is None else cast(RootJson, {"class": findings.root_class, "p": findings.p}),
+        "root": _root(findings),
         "additive": _verdict(findings.additive, write),
         "multiplicative": _verdict(findings.multiplicative, write),
         "resonances": [
@@ -68,6 +73,12 @@ def findings_json(findings: Findings) -> FindingsJson:
         ],
         "families": [{"name": family.name, "source": family.source} for family in findings.families],
     }
+
+
+def _root(findings: Findings) -> RootJson | None:
+    if findings.root_class is None or findings.p is None:
+        return None
+    return {"class": findings.root_class, "p": findings.p}
 
 
 def _quiver(quiver: Quiver, type_: str, write: Write) -> QuiverJson:

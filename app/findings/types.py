@@ -4,7 +4,9 @@ Numbers of the problem's field are strings in the grammar of numbers; vectors ar
 quiver that stands beside them.
 """
 
-from typing import Literal, NotRequired, TypedDict
+from typing import Literal, NotRequired
+
+from typing_extensions import TypedDict
 
 
 class FuchsJson(TypedDict):

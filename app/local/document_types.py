@@ -1,6 +1,8 @@
 """Shape of the JSON problem document, as typed dictionaries; its JSON Schema is written from these."""
 
-from typing import Literal, NotRequired, TypedDict
+from typing import Literal, NotRequired
+
+from typing_extensions import TypedDict
 
 FORMAT = "polewright-problem/1"
 
