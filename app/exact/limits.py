@@ -33,15 +33,16 @@ class OverLimit(ArithmeticError):
 class Budget:
     """Elementary products that may still be spent.  Mutable; share one to bound a whole document."""
 
-    __slots__ = ("left",)
+    __slots__ = ("left", "units")
 
     def __init__(self, units: int = WORK_UNITS) -> None:
+        self.units = units
         self.left = units
 
     def spend(self, units: int) -> None:
         """Take ``units``; raises OverLimit, and takes nothing, when fewer are left."""
         if units > self.left:
-            raise OverLimit("Expanding this takes too much work")
+            raise OverLimit(f"Expanding this takes more than {self.units:,} elementary products")
         self.left -= units
 
 

@@ -25,6 +25,7 @@ from app.exact.limits import (
     MAX_DIGITS,
     MAX_NESTING,
     MAX_POWER,
+    MAX_RADICAND,
     MAX_RAMIFICATION,
     MAX_ROOTS,
     Budget,
@@ -35,7 +36,7 @@ from app.exact.limits import (
 from app.exact.square_root import square_root
 from app.exact.tokens import Token, tokens_of
 from app.exact.value import IMAGINARY_UNIT, Key, Rational, Value, add_term
-from app.exact.writing import write_number
+from app.exact.writing import readable_text
 
 _ADDITIVE = frozenset("+-")
 _MULTIPLICATIVE = frozenset("*/")
@@ -142,7 +143,9 @@ class _Parser:
         """What is read must be readable when written again in canonical form."""
         if len(value.terms) <= 5 and len(self._text) <= 1000:
             return  # at most 5 terms of under 3,500 characters
-        if len(write_number(value)) > MAX_CHARACTERS:
+        # Large roots may be written as up to three; the length is bounded without factoring them.
+        large_roots = sum(abs(radical) > MAX_RADICAND for _, radical in value.terms)
+        if len(readable_text(value)) + 20 * large_roots > MAX_CHARACTERS:
             raise NumberFault(f"Expanded, this number would have more than {MAX_CHARACTERS:,} characters", 0,
                               "a number with fewer or shorter terms")
 
@@ -286,15 +289,16 @@ class _Parser:
             return bounded.inverse(divisor, self._budget)
 
     def _atom(self) -> Value:
-        token = self._advance()
+        token = self._token
+        if token.kind == "end":
+            raise NumberFault("The number ends too early", token.position, _EXAMPLE)
+        self._advance()
         if token.kind == "number":
             return self._literal(token)
         if token.kind == "name":
             return self._named(token)
         if token.text == "(":
             return self._parenthesised(token)
-        if token.kind == "end":
-            raise NumberFault("The number ends too early", token.position, _EXAMPLE)
         raise NumberFault(f'A number or a symbol is missing before "{token.text}"', token.position, _EXAMPLE)
 
     def _literal(self, token: Token) -> Value:

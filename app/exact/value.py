@@ -22,8 +22,8 @@ from app.exact.independence import coprime_base, independent_root_count
 from app.exact.limits import MAX_ROOTS, OverLimit, check_coefficient
 
 Rational = int | Fraction
-Exponent = int | Fraction
-Monomial = tuple[tuple[str, Exponent], ...]
+Power = int | Fraction
+Monomial = tuple[tuple[str, Power], ...]
 Radical = int
 Key = tuple[Monomial, Radical]
 
@@ -336,7 +336,7 @@ class Value:
         Powers of replaced symbols must be integers that are not negative.  Cost: the expansion of the products.
         """
         result: dict[Key, Rational] = {}
-        powers: dict[tuple[str, Exponent], Value] = {}
+        powers: dict[tuple[str, Power], Value] = {}
         for (monomial, radical), coefficient in self._terms.items():
             kept = tuple(pair for pair in monomial if pair[0] not in mapping)
             image = Value({(kept, radical): coefficient})
