@@ -28,6 +28,7 @@ from app.errors import Busy, Failed, Refused
 
 SCHEMA_VERSION = 1
 APPLICATION_ID = 0x504F4C57  # "POLW", so that a file of another program is not taken for ours
+BUSY_SECONDS = 5.0
 _KEPT_DRAFTS = 16
 _LOOK_BACK = 200
 _SCHEMA = """
@@ -122,12 +123,10 @@ class Store:
         """What is wrong with an existing file, or ""; Refused when it is whole but not for this version."""
         if not self.path.exists():
             return ""
-        try:
-            connection = _connect(self.path)
+        try:  # a plain connection: nothing of a file that may not be ours is changed
+            connection = sqlite3.connect(self.path, timeout=BUSY_SECONDS)
         except sqlite3.OperationalError as error:
             raise Refused(f"The desk {self.path} cannot be opened: {error}.") from None
-        except sqlite3.DatabaseError as error:
-            return str(error)
         try:
             return _fault_of_database(connection)
         except sqlite3.OperationalError as error:
@@ -323,7 +322,7 @@ def _now() -> str:
 
 
 def _connect(path: Path) -> sqlite3.Connection:
-    connection = sqlite3.connect(path, timeout=5.0, isolation_level=None, check_same_thread=False)
+    connection = sqlite3.connect(path, timeout=BUSY_SECONDS, isolation_level=None, check_same_thread=False)
     try:
         connection.execute("PRAGMA foreign_keys = ON")
         connection.execute("PRAGMA journal_mode = WAL")
