@@ -103,7 +103,7 @@ def _run(application: FastAPI, listener: socket.socket) -> None:
         application,
         http=Protocol,
         ws="none",
-        log_level="error",
+        log_level="critical",  # faults are logged by the guard; the rest is about requests cut off at the end
         access_log=False,
         server_header=False,
         proxy_headers=False,

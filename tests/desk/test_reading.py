@@ -128,6 +128,14 @@ def test_a_symbol_with_the_name_of_the_coordinate_is_renamed_where_it_must_be():
     assert reading.problem.symbols == ("z2", "z1")
 
 
+def test_the_name_of_the_coordinate_may_be_a_symbol_elsewhere():
+    draft = draft_with(eigenvalue_e3_value="z", block_b2_exponent="a/z^2")
+    reading = read_draft(draft)
+    assert reading.faults == ()
+    assert reading.problem is not None
+    assert reading.problem.symbols == ("a", "z", "b")
+
+
 def test_symbols_in_order_of_first_appearance():
     draft = draft_with(eigenvalue_e3_value="c+a", pole_p1_at="t")
     assert symbols_of(draft) == ("t", "c", "a", "b")

@@ -174,6 +174,19 @@ def test_two_programs_on_one_folder_see_each_other(path, store):
         assert other.current().draft == named("a")
 
 
+def test_a_turn_keeps_another_program_waiting(path, store):
+    """Two programs that both look and then add: the second adds to what the first has added."""
+    with closing(Store(path, first)) as other:
+        thread = threading.Thread(target=lambda: other.append(named("b"), "b"))
+        with store.turn():
+            head = store.current()
+            thread.start()
+            time.sleep(0.05)
+            assert store.append(named("a"), "a").parent == head.number
+        thread.join()
+        assert [entry.words for entry in store.history()] == ["b", "a", "the desk was begun"]
+
+
 def test_settings_of_the_file(path, store):
     with closing(sqlite3.connect(path)) as other:
         assert other.execute("PRAGMA journal_mode").fetchone() == ("wal",)
@@ -191,6 +204,15 @@ def damaged_in_the_middle(path):
     data = bytearray(path.read_bytes())
     for page in range(4096, len(data), 4096):
         data[page : page + 64] = b"\xff" * 64
+    path.write_bytes(data)
+
+
+def damaged_in_the_index(path):
+    """Only an integrity check sees this before it does harm."""
+    with closing(sqlite3.connect(path)) as other:
+        (page,) = other.execute("SELECT rootpage FROM sqlite_master WHERE name = 'revisions_by_parent'").fetchone()
+    data = bytearray(path.read_bytes())
+    data[page * 4096 - 8 : page * 4096] = b"\x07" * 8
     path.write_bytes(data)
 
 
@@ -229,6 +251,7 @@ def with_loose_ends(path):
 
 DAMAGES = [
     damaged_in_the_middle,
+    damaged_in_the_index,
     truncated,
     not_sqlite,
     foreign,

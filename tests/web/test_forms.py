@@ -260,7 +260,9 @@ def test_a_page_of_an_unknown_state_that_cannot_stand_alone_is_refused(store, de
 
 
 def test_a_changed_shorthand_is_read(store, demos):
+    before = store.current()
     outcome = post(store, demos, shorthand="21,111,111")
+    assert outcome.revision.parent == before.number
     assert [len(pole.blocks[0].residue) for pole in outcome.revision.draft.poles] == [2, 3, 3]
     assert outcome.revision.draft.shorthand == "21,111,111"
     assert read_draft(outcome.revision.draft).faults == ()
