@@ -13,6 +13,7 @@ from itertools import combinations
 
 from app.exact.value import Value, total
 from app.local.formal_type import Block, Exponent, Pole
+from app.local.orbit import irregularity_of_endomorphisms
 from app.local.problem import Problem
 from app.roots.quiver import Quiver, Vertex
 
@@ -40,19 +41,11 @@ def slope_of_difference(first: Exponent, second: Exponent) -> int:
     return int(max(differing, default=0))
 
 
-def irregularity(pole: Pole) -> int:
-    """Irr(End) at an unramified pole: the sum over ordered pairs of blocks of m m' slope(q − q')."""
-    return 2 * sum(
-        a.multiplicity * b.multiplicity * slope_of_difference(a.exponent, b.exponent)
-        for a, b in combinations(pole.blocks, 2)
-    )
-
-
 def base_pole(problem: Problem) -> int:
     """Index of the base pole: the chosen one, else the largest Irr(End), the lowest index among equals."""
     if problem.base is not None:
         return problem.base
-    irregularities = [irregularity(pole) for pole in problem.poles]
+    irregularities = [irregularity_of_endomorphisms(pole) for pole in problem.poles]
     return irregularities.index(max(irregularities))
 
 
