@@ -46,7 +46,9 @@ def multiply_monomials(first: Monomial, second: Monomial) -> Monomial:
     powers = dict(first)
     for name, power in second:
         powers[name] = powers.get(name, 0) + power
-    return tuple(sorted((name, power) for name, power in powers.items() if power))
+    if 0 in powers.values():  # only when negative powers occur
+        powers = {name: power for name, power in powers.items() if power}
+    return tuple(sorted(powers.items()))
 
 
 def multiply_radicals(first: Radical, second: Radical) -> tuple[int, Radical]:
@@ -257,12 +259,16 @@ class Value:
         product: dict[Key, Rational] = {}
         for (monomial, radical), coefficient in second.items():
             for (other_monomial, other_radical), other_coefficient in first.items():
-                factor, root = multiply_radicals(radical, other_radical)
-                key = (multiply_monomials(monomial, other_monomial), root)
                 term = coefficient * other_coefficient
-                if factor != 1:
+                if radical == 1:
+                    root = other_radical
+                else:
+                    factor, root = multiply_radicals(radical, other_radical)
                     term = term * factor
-                add_term(product, key, _integral_if_possible(term) if term.__class__ is Fraction else term)
+                if term.__class__ is Fraction and term.denominator == 1:
+                    term = term.numerator
+                key = (multiply_monomials(monomial, other_monomial), root)
+                add_term(product, key, term)
         return Value(product)
 
     def __truediv__(self, other: "Value | Rational") -> "Value":

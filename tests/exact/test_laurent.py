@@ -58,6 +58,12 @@ def test_terms_that_cancel_are_not_blamed():
     assert caught.value.position == 8
 
 
+def test_the_first_term_that_is_wrong_is_blamed():
+    with pytest.raises(NumberFault) as caught:
+        parse_laurent("1/z+2+1/z^2+3", SYMBOLS)
+    assert caught.value.position == 4
+
+
 def test_another_coordinate():
     assert parse_laurent("z/w^2", ("z",), "w") == {2: Value.symbol("z")}
 

@@ -27,14 +27,15 @@ REFUSED = [
     (" " * 20_000 + "1", "20,000 characters", 20_000),
     (f"({summed(12)})^64", "2,000 terms", len(summed(12)) + 2),
     (f"({summed(63)})^2", "2,000 terms", None),
-    (f"({summed(40)})*({summed(40, 'x{0}^2')})*({summed(40, 'x{0}^3')})", "terms", None),
+    (f"({summed(40)})*({summed(40, 'x{0}^2')})*({summed(40, 'x{0}^3')})", "elementary products", None),
     (f"({summed(900)})^2", "2,000 terms", None),
     (f"({summed(900)}+a^2)^2", "elementary products", None),
     (f"({summed(600)})*({summed(600, 'x{0}+')}1)", "elementary products", None),
     (summed(2001), "2,000 terms", None),
     ("+".join(["(a+b)^64"] * 1500), "elementary products", None),
     ("+".join(["(a+b+c)^40"] * 1500), "elementary products", None),
-    ("(a+b+c)^60", "20,000 characters", 0),
+    ("(a+b+c)^40", "20,000 characters", 0),
+    ("(a+b+c)^60", "elementary products", None),
     ("(" * 51 + "1" + ")" * 51, "50 deep", 50),
     ("sqrt(" * 51 + "1" + ")" * 51, "50 deep", 254),
     ("(" * 20_000, "50 deep", 50),
@@ -105,7 +106,7 @@ WITHIN = [
     "1/(i+" + "+".join(f"sqrt({p})" for p in PRIMES[:6]) + ")",
     "*".join(f"(a+sqrt({p}))" for p in PRIMES[:6]),
     "+".join(f"{k}*sqrt({2 * k * k})" for k in range(1, 900)),
-    "+".join(["1/(1+sqrt(2)+sqrt(3)+sqrt(5))"] * 600),
+    "+".join(["1/(1+sqrt(2)+sqrt(3)+sqrt(5))"] * 300),
     "+".join(["sqrt(999999999999999989)"] * 800),
 ]
 
@@ -122,7 +123,7 @@ def test_read_within_the_limits_and_written_readably(text):
 
 
 def test_hardest_work_allowed_is_short():
-    worst = f"({summed(30)})*({summed(30, 'a*x{0}')})" + "+(1/3*a+b)^40" * 8
+    worst = f"({summed(30)})*({summed(30, 'a*x{0}')})" + "+(1/3*a+b)^40" * 4
     began = time.process_time()
     parse_number(worst, NAMES)
     assert time.process_time() - began < 0.8
