@@ -46,6 +46,7 @@ def power(base: Value, exponent: int, budget: Budget) -> Value:
         # A power of a sum of degree 1 has a term for every way to share the exponent among the monomials.
         monomials = len({monomial for monomial, _ in base.terms})
         check_term_count(comb(exponent + monomials - 1, exponent))
+        budget.foresee(monomials * comb(exponent + monomials - 1, monomials))  # Σ t·C(k+t−1, k) over k < exponent
     for _ in range(exponent):
         result = product(result, base, budget)
     return result

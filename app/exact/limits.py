@@ -39,10 +39,14 @@ class Budget:
         self.units = units
         self.left = units
 
-    def spend(self, units: int) -> None:
-        """Take ``units``; raises OverLimit, and takes nothing, when fewer are left."""
+    def foresee(self, units: int) -> None:
+        """Raise OverLimit when fewer than ``units`` are left, and take nothing."""
         if units > self.left:
             raise OverLimit(f"Expanding this takes more than {self.units:,} elementary products")
+
+    def spend(self, units: int) -> None:
+        """Take ``units``; raises OverLimit, and takes nothing, when fewer are left."""
+        self.foresee(units)
         self.left -= units
 
 
