@@ -12,6 +12,7 @@ import socket
 import sys
 import threading
 import webbrowser
+from collections.abc import Callable
 from pathlib import Path
 
 import uvicorn
@@ -42,12 +43,14 @@ def serve(port: int | None = None, data: Path | None = None, open_browser: bool 
         application = create_application(Settings(data=data or data_folder(), port=served))
         if application.state.store.notice:
             _say(application.state.store.notice)
-        address = f"http://{HOST}:{served}/"
-        print(f"Polewright is at {address} (Ctrl-C ends it)", flush=True)
-        if open_browser:
-            threading.Thread(target=webbrowser.open, args=(address,), daemon=True).start()
-        _run(application, listener)
+        _run(application, listener, lambda: _announce(f"http://{HOST}:{served}/", open_browser))
     return 0
+
+
+def _announce(address: str, open_browser: bool) -> None:
+    print(f"Polewright is at {address} (Ctrl-C ends it)", flush=True)
+    if open_browser:
+        threading.Thread(target=webbrowser.open, args=(address,), daemon=True).start()
 
 
 def listen(wanted: int) -> tuple[socket.socket, str]:
@@ -98,7 +101,21 @@ def occupant(port: int) -> str:
     return "another program"
 
 
-def _run(application: FastAPI, listener: socket.socket) -> None:
+class _Server(uvicorn.Server):
+    """Says where it is once it answers, and once Ctrl-C is in its hands: before, Ctrl-C could get lost in an import."""
+
+    def __init__(self, config: uvicorn.Config, announce: Callable[[], None]) -> None:
+        super().__init__(config)
+        self._announce = announce
+
+    async def startup(self, sockets: list[socket.socket] | None = None) -> None:
+        """Start, then announce."""
+        await super().startup(sockets)
+        if self.started:
+            self._announce()
+
+
+def _run(application: FastAPI, listener: socket.socket, announce: Callable[[], None]) -> None:
     config = uvicorn.Config(
         application,
         http=Protocol,
@@ -111,7 +128,7 @@ def _run(application: FastAPI, listener: socket.socket) -> None:
         h11_max_incomplete_event_size=LONGEST_HEAD,
     )
     with contextlib.suppress(KeyboardInterrupt):  # the server has shut down by then and passes the signal on
-        uvicorn.Server(config).run(sockets=[listener])
+        _Server(config, announce).run(sockets=[listener])
 
 
 def _say(sentence: str) -> None:

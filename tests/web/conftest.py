@@ -43,7 +43,12 @@ class Running:
         """End it as Ctrl-C does, and return what it said on standard error."""
         if self.process.poll() is None:
             self.process.send_signal(signal.SIGINT)
-        return self.process.communicate(timeout=20)[1]
+        try:
+            return self.process.communicate(timeout=20)[1]
+        except subprocess.TimeoutExpired:
+            self.process.kill()
+            self.process.communicate()
+            raise
 
 
 def start_server(data: Path, *options: str) -> Running:

@@ -167,7 +167,7 @@ def test_the_browser_is_opened_unless_told_otherwise(tmp_path, monkeypatch):
     opened = []
     ran = threading.Event()
     monkeypatch.setattr(serving.webbrowser, "open", lambda address: (opened.append(address), ran.set()))
-    monkeypatch.setattr(serving, "_run", lambda application, listener: application.state.store.close())
+    monkeypatch.setattr(serving, "_run", lambda application, _, announce: (application.state.store.close(), announce()))
     assert serving.serve(port=0, data=tmp_path, open_browser=False) == 0
     assert not ran.wait(0.1)
     assert serving.serve(port=0, data=tmp_path, open_browser=True) == 0
