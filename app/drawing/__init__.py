@@ -1,0 +1,10 @@
+"""Geometry of diagrams and their SVG.
+
+Called by ``web/``.  It places vertices and writes markup with ids; it refuses to know links, routes, verdicts and
+desks.
+
+    geometry.py    the placed diagram, as frozen values
+    ring.py        the order of core vertices on their ring
+    layout.py      quiver → placed diagram
+    svg.py         placed diagram → SVG
+"""
