@@ -206,7 +206,7 @@ class BlockReader:
         return EigenvalueRead(value, jordan)
 
     def _value(self, data: object, at: str) -> Value | Forced | None:
-        if data != FORCED_TEXT:
+        if not isinstance(data, str) or data.strip() != FORCED_TEXT:
             return self._numbers.read(data, at)
         if self._reading == "local_monodromy":
             message = "The Fuchs relation forces no value of θ, only its class modulo 1"

@@ -56,8 +56,11 @@ class _Reader:
         for key in _REQUIRED:
             if key not in data:
                 self._faults.add("", f"The key {key} is missing", f"the keys {', '.join(_REQUIRED)}")
-        if "format" in data and data["format"] != FORMAT:
-            self._faults.wrong_type("/format", data["format"], f'"{FORMAT}"')
+        written = data.get("format", FORMAT)
+        if not isinstance(written, str):
+            self._faults.wrong_type("/format", written, f'"{FORMAT}"')
+        elif written != FORMAT:
+            self._faults.add("/format", f"The format {quoted(written)} is unknown", f'"{FORMAT}"')
         name = self._text(data, "name")
         notes = self._text(data, "notes")
         if len(notes) > MAXIMUM_NOTES:

@@ -1,7 +1,8 @@
 """The numbers of one document: read once each, under the limits that hold for the document as a whole.
 
-Most numbers are integers or names of symbols, so these take a short way that skips the grammar; equal texts are
-read once and share one value.  A reader lives as long as the reading of its document.
+Most numbers are sums such as ``-a-1/2*b+3``, so these take a short way that skips the grammar of ``exact/`` (and
+leaves to it whatever it does not know); equal texts are read once and share one value.  A reader lives as long as
+the reading of its document.
 """
 
 import re
@@ -13,12 +14,16 @@ from app.errors import NumberFault
 from app.exact.independence import independent_root_count
 from app.exact.limits import WORK_UNITS, Budget
 from app.exact.number import parse_number
-from app.exact.value import Value
+from app.exact.value import Key, Value
 from app.local.faults import Faults
 from app.local.json_reader import WrittenFloat
 from app.local.limits import MAXIMUM_DIGITS, MAXIMUM_ROOTS, MAXIMUM_TERMS, MAXIMUM_WORK
 
 _PLAIN_INTEGER = re.compile(r"-?[0-9]{1,18}")
+_POWER = re.compile(r"([0-9]{1,18})(?:/([0-9]{1,18}))?")
+_NAME = "[A-Za-z_][A-Za-z_0-9]*"
+_TERM = re.compile(rf"([+-]?)(?:([0-9]{{1,18}})(?:/([0-9]{{1,18}}))?(?:\*({_NAME}))?|({_NAME}))")
+_MOST_TERMS_AT_SIGHT = 20
 _TOO_LARGE = 10**MAXIMUM_DIGITS
 _A_NUMBER = 'an exact number, written as a string such as "1/3"'
 
@@ -37,7 +42,7 @@ class Numbers:
     def read(self, data: object, at: str) -> Value | None:
         """The value of one number of the document, or None after noting what is wrong with it."""
         text = self._text(data, at)
-        if text is None:
+        if text is None or self._terms_left < 0:
             return None
         value = self._known.get(text)
         if value is None:
@@ -50,7 +55,7 @@ class Numbers:
     def read_position(self, data: object, at: str) -> Value | None:
         """The same for a position; its symbols do not count as used in a number."""
         text = self._text(data, at)
-        value = None if text is None else self._parsed(text, at)
+        value = None if text is None or self._terms_left < 0 else self._parsed(text, at)
         return None if value is None else self._counted(value, at)
 
     def symbols_used(self) -> frozenset[str]:
@@ -99,10 +104,9 @@ class Numbers:
         return None
 
     def _parsed(self, text: str, at: str) -> Value | None:
-        if _PLAIN_INTEGER.fullmatch(text):
-            return Value.rational(int(text))
-        if text in self._symbols:
-            return Value.symbol(text)
+        value = number_at_sight(text, self._symbols)
+        if value is not None:
+            return value
         budget = Budget(min(WORK_UNITS, self._work_left))
         granted = budget.left
         try:
@@ -117,8 +121,6 @@ class Numbers:
 
     def _counted(self, value: Value, at: str) -> Value | None:
         """The value, unless the document's numbers together have become too long."""
-        if self._terms_left < 0:
-            return None
         self._terms_left -= len(value.terms)
         if self._terms_left >= 0:
             return value
@@ -130,12 +132,38 @@ class Numbers:
         return None
 
 
+def number_at_sight(text: str, symbols: frozenset[str]) -> Value | None:
+    """The value of an integer, a symbol, or a short sum of rational multiples of symbols; None for other texts.
+
+    None says nothing about the text: it may be a number of another form or no number.
+    """
+    if _PLAIN_INTEGER.fullmatch(text):
+        return Value.rational(int(text))
+    if text in symbols:
+        return Value.symbol(text)
+    terms: list[tuple[Key, int | Fraction]] = []
+    place = 0
+    while place < len(text):
+        match = _TERM.match(text, place)
+        if match is None or len(terms) == _MOST_TERMS_AT_SIGHT:
+            return None
+        sign, numerator, denominator, factor, alone = match.groups()
+        name = factor or alone
+        if (place and not sign) or (name and name not in symbols):
+            return None
+        above = -int(numerator or 1) if sign == "-" else int(numerator or 1)
+        below = int(denominator or 1)
+        if not below:
+            return None
+        terms.append(((((name, 1),) if name else (), 1), above if below == 1 else Fraction(above, below)))
+        place = match.end()
+    return Value.from_terms(terms) if terms else None
+
+
 def read_power(text: str) -> Fraction | None:
-    """A positive rational, written "2" or "5/2" (or otherwise in the number grammar); None for anything else."""
-    try:
-        power = parse_number(text, ()).as_rational()
-    except NumberFault:
+    """A positive rational written as "2" or "5/2"; None for anything else."""
+    match = _POWER.fullmatch(text.strip())
+    if match is None:
         return None
-    return power if power is not None and power > 0 else None
-
-
+    above, below = int(match.group(1)), int(match.group(2) or 1)
+    return Fraction(above, below) if above and below else None

@@ -86,7 +86,7 @@ class PolesReader:
         self._read.append(blocks)
 
     def _position(self, data: object, at: str) -> Position | None:
-        if data == "infinity":
+        if isinstance(data, str) and data.strip() == "infinity":
             return Position(None)
         value = self._numbers.read_position(data, at)
         if value is None:
