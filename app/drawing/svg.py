@@ -12,6 +12,7 @@ from math import cos, pi, sin
 from app.drawing.geometry import Diagram, Fold, Link, Node
 
 _LONGEST_LABEL = 18
+_FULL = 1.4
 _SMALL = 0.5
 
 STYLE = """
@@ -38,7 +39,7 @@ def svg(
     ``name`` begins the ids in it, so that several pictures stand on one page; ``wrap(id, markup)`` may put something
     round a vertex; ``alone`` adds a namespace and style for a file.  Cost: linear in what is drawn.
     """
-    parts = [_head(diagram, title, description, name, alone=alone, scale=1.0)]
+    parts = [_head(diagram, title, description, name, alone=alone, scale=_FULL)]
     parts += [_link(link) for link in diagram.links]
     parts += [_fold(fold) for fold in diagram.folds]
     for node in diagram.nodes:

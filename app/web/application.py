@@ -1,7 +1,5 @@
 """The application put together: guard around refusals around pages and API, with the store behind."""
 
-import importlib
-import importlib.util
 from collections.abc import AsyncIterator
 from contextlib import asynccontextmanager
 from dataclasses import dataclass
@@ -15,7 +13,7 @@ from starlette.staticfiles import StaticFiles
 from app import VERSION
 from app.desk.store import Store
 from app.errors import PolewrightError
-from app.web import api
+from app.web import api, pages
 from app.web.demos import Demos
 from app.web.guard import Guard
 from app.web.refusals import on_framework_error, on_refusal, on_validation_error
@@ -66,8 +64,7 @@ def create_application(settings: Settings) -> FastAPI:
     application.state.store = store
     application.state.work = Work()
     application.include_router(api.router)
-    if importlib.util.find_spec("app.web.pages") is not None:
-        application.include_router(importlib.import_module("app.web.pages").router, include_in_schema=False)
+    application.include_router(pages.router, include_in_schema=False)
     application.mount("/static", StaticFiles(directory=STATIC, check_dir=False), name="static")
     application.add_middleware(Guard, port=settings.port)
     return application
