@@ -27,6 +27,7 @@ _STEP = 58.0
 _BOW = 26.0
 _MOST_CURVES = 5
 _MARGIN = 30.0
+_MOST_TERMS = 40
 
 
 @dataclass(frozen=True)
@@ -162,7 +163,8 @@ class _Placer:
     def _node(self, v: int, point: Point, direction: Point) -> None:
         vertex = self.quiver.vertices[v]
         radius = _CORE_RADIUS if vertex.role == "core" else _LEG_RADIUS
-        parameter = write_number(vertex.parameter)
+        terms = len(vertex.parameter.terms)
+        parameter = write_number(vertex.parameter) if terms <= _MOST_TERMS else f"a sum of {terms} terms"
         # the parameter stands beside the vertex, across the direction of the leg, where no edge runs
         across = (-direction[1], direction[0]) if abs(direction[0]) > 0.3 else (1.0, 0.0)
         if across[1] > 0.5:

@@ -28,10 +28,10 @@ from app.existence.verdict import (
     Step,
     Verdict,
 )
-from app.roots.form import core_groups, evaluate, p_of, pairing, pairing_with
+from app.roots.form import core_groups, evaluate, p_of, pairing
 from app.roots.positive import root_class
 from app.roots.quiver import Quiver, Vector
-from app.roots.reduction import CoreMove, Move, Reduction
+from app.roots.reduction import CoreMove, Move, Reduction, pull_back
 
 SYSTEM = "system"
 MONODROMY = "local system"
@@ -54,23 +54,6 @@ def steps_of(quiver: Quiver, moves: Sequence[Move]) -> tuple[Step, ...]:
         return ids[0] if len(ids) == 1 else ids
 
     return tuple(step(move.vertices) for move in moves)
-
-
-def pull_back(quiver: Quiver, moves: Sequence[Move], vector: Vector) -> Vector:
-    """The vector that the moves bring to the given one: their reflections in reverse.
-
-    Cost: the degree of the vertex, for every single reflection.
-    """
-    x = list(vector)
-    for move in reversed(moves):
-        if isinstance(move, CoreMove):
-            height = sum(pairing_with(quiver, x, v) for v in move.vertices)
-            for v in move.vertices:
-                x[v] -= height
-        else:
-            for v in reversed(move.vertices):
-                x[v] -= pairing_with(quiver, x, v)
-    return tuple(x)
 
 
 class _Judge:
@@ -138,7 +121,7 @@ class _Judge:
 
     def _fundamental(self) -> Verdict:
         reduction = self.reduction
-        found = obstruction(self.quiver, reduction.dimension, reduction.parameters, modulo_integers=self.modulo)
+        found = obstruction(self.quiver, reduction.dimension, self._value, modulo_integers=self.modulo)
         if found is not None:
             return self._obstructed(found)
         parameters = 2 * p_of(self.quiver, self.quiver.dimension)
@@ -150,6 +133,10 @@ class _Judge:
             return self._yes(f"{words}, and none of the exceptions there applies: {family}.", "fundamental set")
         return self._several_poles(family)
 
+    def _value(self, vector: Vector) -> Value:
+        """The reduced parameters on a vector: λ on the vector that the moves bring to it."""
+        return evaluate(self.quiver.parameters, pull_back(self.quiver, self.reduction.moves, vector))
+
     def _several_poles(self, family: str) -> Verdict:
         reduction = self.reduction
         if not is_small(reduction.dimension):
@@ -158,7 +145,7 @@ class _Judge:
                 f"irregular poles this criterion is checked but not proved. By it {family}."
             )
             return self._yes(reason, "fundamental set, several poles", proved=False)
-        best = best_decomposition(self.quiver, reduction.dimension, reduction.parameters, modulo_integers=self.modulo)
+        best = best_decomposition(self.quiver, reduction.dimension, self._value, modulo_integers=self.modulo)
         total = sum(count * p_of(self.quiver, part) for count, part in best or ())
         if best is not None and total >= p_of(self.quiver, reduction.dimension):
             return self._obstructed(Obstruction(best, "enumeration"))

@@ -4,7 +4,7 @@
 λ·β_i = 0.  The search is bounded before it begins.
 """
 
-from collections.abc import Sequence
+from collections.abc import Callable
 from itertools import product
 from math import prod
 
@@ -24,13 +24,15 @@ def is_small(vector: Vector) -> bool:
 
 
 def best_decomposition(
-    quiver: Quiver, vector: Vector, parameters: Sequence[Value], *, modulo_integers: bool
+    quiver: Quiver, vector: Vector, value_on: Callable[[Vector], Value], *, modulo_integers: bool
 ) -> tuple[tuple[int, Vector], ...] | None:
     """A decomposition into two or more admissible roots with the largest Σ p, or None if there is no decomposition.
 
-    Hypothesis: ``is_small(vector)``.  Returns (multiplicity, root) pairs.
+    ``value_on`` gives λ on a vector.  Hypothesis: ``is_small(vector)``.  Returns (multiplicity, root) pairs.
     Cost: the number of vectors below, squared, at most.
     """
+    size = len(vector)
+    parameters = [value_on(tuple(int(u == v) for u in range(size))) for v in range(size)]
     roots: dict[int, list[tuple[Vector, int]]] = {}
     for candidate in product(*(range(n + 1) for n in vector)):
         if candidate == vector or not any(candidate) or not in_lattice(quiver, candidate):

@@ -10,7 +10,7 @@ Sources: Crawley-Boevey, Compositio Math. 126 (2001), Theorem 8.1, for the addit
 vertices; for the multiplicative one Crawley-Boevey and Shaw, Adv. Math. 201 (2006).
 """
 
-from collections.abc import Sequence
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from app.exact.value import Value
@@ -19,7 +19,6 @@ from app.roots.form import (
     bridges,
     component,
     content,
-    evaluate,
     in_lattice,
     p_of,
     pairing_with,
@@ -27,6 +26,8 @@ from app.roots.form import (
     support,
 )
 from app.roots.quiver import Quiver, Vector
+
+Edge = tuple[int, int]
 
 
 @dataclass(frozen=True)
@@ -46,51 +47,59 @@ def order_of(value: Value, *, modulo_integers: bool) -> int | None:
 
 
 def obstruction(
-    quiver: Quiver, vector: Vector, parameters: Sequence[Value], *, modulo_integers: bool
+    quiver: Quiver, vector: Vector, value_on: Callable[[Vector], Value], *, modulo_integers: bool
 ) -> Obstruction | None:
     """The first of the shapes (I), (II), (III) that applies to a vector of the fundamental set, or None.
 
-    Hypotheses: λ·α vanishes, the support is connected, (α, ε) ≤ 0 for every ε and (α, e_v) ≤ 0 on the legs.
+    ``value_on`` gives λ on a vector.  Hypotheses: λ·α vanishes, the support is connected, (α, ε) ≤ 0 for every ε and
+    (α, e_v) ≤ 0 on the legs.
     Cost: the number of edges, for every bridge that ends in dimension 1.
     """
-    return (
-        _multiple(quiver, vector, parameters, modulo_integers)
-        or _bridge(quiver, vector, parameters, modulo_integers)
-        or _affine_end(quiver, vector, parameters, modulo_integers)
+    found = _multiple(quiver, vector, value_on, modulo_integers)
+    if found is not None:
+        return found
+    ends = [edge for edge in bridges(quiver, support(vector)) if 1 in (vector[edge[0]], vector[edge[1]])]
+    return _bridge(quiver, vector, ends, value_on, modulo_integers) or _affine_end(
+        quiver, vector, ends, value_on, modulo_integers
     )
 
 
-def _multiple(quiver: Quiver, vector: Vector, parameters: Sequence[Value], modulo: bool) -> Obstruction | None:
+def _multiple(quiver: Quiver, vector: Vector, value_on: Callable[[Vector], Value], modulo: bool) -> Obstruction | None:
     multiple = content(vector)
     if multiple < 2 or p_of(quiver, vector) != 1:
         return None
     delta = tuple(n // multiple for n in vector)
-    order = order_of(evaluate(parameters, delta), modulo_integers=modulo)
+    order = order_of(value_on(delta), modulo_integers=modulo)
     if order is None or order >= multiple:
         return None
     part = tuple(n * order for n in delta)
     return Obstruction(((multiple // order, part),), "multiple of an isotropic root")
 
 
-def _bridge(quiver: Quiver, vector: Vector, parameters: Sequence[Value], modulo: bool) -> Obstruction | None:
+def _bridge(
+    quiver: Quiver, vector: Vector, ends: list[Edge], value_on: Callable[[Vector], Value], modulo: bool
+) -> Obstruction | None:
     whole = support(vector)
-    for j, k in bridges(quiver, whole):
+    for j, k in ends:
         if vector[j] == 1 and vector[k] == 1:
             side = _side(quiver, whole, j, k)
             ours, rest = restrict(vector, side), restrict(vector, whole - side)
             if not in_lattice(quiver, ours):
                 continue
-            if order_of(evaluate(parameters, ours), modulo_integers=modulo) == 1:
+            if order_of(value_on(ours), modulo_integers=modulo) == 1:
                 return Obstruction(((1, ours), (1, rest)), "bridge")
     return None
 
 
-def _affine_end(quiver: Quiver, vector: Vector, parameters: Sequence[Value], modulo: bool) -> Obstruction | None:
+def _affine_end(
+    quiver: Quiver, vector: Vector, ends: list[Edge], value_on: Callable[[Vector], Value], modulo: bool
+) -> Obstruction | None:
     whole = support(vector)
-    for edge in bridges(quiver, whole):
+    for edge in ends:
         for j, k in (edge, edge[::-1]):
             multiple = vector[k]
-            if vector[j] != 1 or multiple < 2:
+            # behind the bridge α pairs to 0 with k only if α itself pairs to −α_j; the look saves a walk
+            if vector[j] != 1 or multiple < 2 or pairing_with(quiver, vector, k) != -1:
                 continue
             side = _side(quiver, whole, k, j)
             behind = restrict(vector, side)
@@ -100,7 +109,7 @@ def _affine_end(quiver: Quiver, vector: Vector, parameters: Sequence[Value], mod
             rest = restrict(vector, whole - side)
             if not (in_lattice(quiver, delta) and in_lattice(quiver, rest)):
                 continue
-            if order_of(evaluate(parameters, delta), modulo_integers=modulo) == 1:
+            if order_of(value_on(delta), modulo_integers=modulo) == 1:
                 return Obstruction(((multiple, delta), (1, rest)), "affine end")
     return None
 

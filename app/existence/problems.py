@@ -32,15 +32,17 @@ def additive_verdict(problem: Problem, quiver: Quiver | None, reduction: Reducti
     return decide(quiver, reduction)
 
 
-def multiplicative_verdict(problem: Problem) -> Verdict | None:
+def multiplicative_verdict(problem: Problem, quiver: Quiver | None) -> Verdict | None:
     """The verdict on irreducible local systems, None where some pole is irregular.
 
-    Hypotheses: none beyond a valid problem.  The merged classes have a quiver of their own, which the verdict carries.
+    ``quiver`` is that of the problem.  Merged classes have a quiver of their own, which the verdict carries.
     Source: Crawley-Boevey and Shaw, Adv. Math. 201 (2006); Crawley-Boevey, arXiv:2509.11998; Shu, arXiv:2509.11841.
     """
     if not problem.all_log:
         return None
-    quiver = quiver_of(local_monodromy_problem(problem))
+    merged = local_monodromy_problem(problem)
+    if quiver is None or merged.poles != problem.poles:
+        quiver = quiver_of(merged)
     return decide(quiver, reduce(quiver, modulo_integers=True), modulo_integers=True)
 
 

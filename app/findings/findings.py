@@ -12,7 +12,6 @@ from app.existence.verdict import Verdict
 from app.findings.families import Family, families
 from app.local.orbit import largest_slope, moduli_dimension, orbit_dimension, rigidity_index
 from app.local.problem import Problem
-from app.local.writer import canonical_text
 from app.operations.descent import DescentStep, descent
 from app.roots.build import quiver_of
 from app.roots.dynkin import type_name
@@ -126,35 +125,17 @@ def examine(problem: Problem) -> Findings:
         root_class=None if quiver is None or reduction is None else _class_of(quiver, reduction),
         p=None if quiver is None else p_of(quiver, quiver.dimension),
         additive=additive_verdict(problem, quiver, reduction),
-        multiplicative=multiplicative_verdict(problem),
+        multiplicative=multiplicative_verdict(problem, quiver),
         resonances=_resonances(problem),
         descent=() if quiver is None or reduction is None else descent(quiver, reduction),
         families=families(problem),
     )
 
 
-@dataclass(frozen=True)
-class _Key:
-    """A problem known by its canonical text alone."""
-
-    text: str
-    problem: Problem
-
-    def __hash__(self) -> int:
-        return hash(self.text)
-
-    def __eq__(self, other: object) -> bool:
-        return isinstance(other, _Key) and other.text == self.text
-
-
-def examine_cached(problem: Problem) -> Findings:
-    """``examine``, remembered for the last problems by their canonical form."""
-    return _examine_key(_Key(canonical_text(problem), problem))
-
-
 @lru_cache(maxsize=64)
-def _examine_key(key: _Key) -> Findings:
-    return examine(key.problem)
+def examine_cached(problem: Problem) -> Findings:
+    """``examine``, remembered for the last problems; equal problems are those with the same canonical form."""
+    return examine(problem)
 
 
 def _class_of(quiver: Quiver, reduction: Reduction) -> RootClass:

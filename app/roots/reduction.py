@@ -18,6 +18,7 @@ for ε, Hiroe, Duke Math. J. 166 (2017).
 """
 
 import itertools
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Literal
 
@@ -59,16 +60,15 @@ class Blocked:
 
 @dataclass(frozen=True)
 class Reduction:
-    """Moves, how they ended, and (α, λ) at the end.
+    """Moves, how they ended, and α at the end.
 
-    ``outcome``: "real" (α became ε or a coordinate vector), "fundamental", or why α is no root: "negative" entry,
-    "disconnected" support.
+    ``outcome``: "real" (α became ε), "fundamental", or why α is no root: "negative" entry, "disconnected" support.
+    The parameters at the end are λ on the vectors that the moves bring to the end (see ``pull_back``).
     """
 
     moves: tuple[Move, ...]
     outcome: Outcome
     dimension: Vector
-    parameters: tuple[Value, ...]
     blocked: Blocked | None
 
 
@@ -80,6 +80,23 @@ def reduce(quiver: Quiver, *, modulo_integers: bool = False) -> Reduction:
     Cost: at most rank many core moves; each costs the number of core vertices plus one insertion for each leg.
     """
     return _Reducer(quiver, modulo_integers).run()
+
+
+def pull_back(quiver: Quiver, moves: Sequence[Move], vector: Vector) -> Vector:
+    """The vector that the moves bring to the given one: their reflections in reverse.
+
+    Cost: the degree of the vertex, for every single reflection.
+    """
+    x = list(vector)
+    for move in reversed(moves):
+        if isinstance(move, CoreMove):
+            height = sum(pairing_with(quiver, x, v) for v in move.vertices)
+            for v in move.vertices:
+                x[v] -= height
+        else:
+            for v in reversed(move.vertices):
+                x[v] -= pairing_with(quiver, x, v)
+    return tuple(x)
 
 
 @dataclass
@@ -219,12 +236,7 @@ class _Reducer:
         return tuple(vector)
 
     def _finish(self, outcome: Outcome) -> Reduction:
-        parameters: dict[int, Value] = dict(self.parameters)
-        for leg in self.legs:
-            for k, vertex in enumerate(leg.vertices):
-                parameters[vertex] = leg.values[k] - leg.values[k + 1]
-        ordered = tuple(parameters[v] for v in range(len(self.quiver.vertices)))
-        return Reduction(tuple(self.moves), outcome, self._vector(), ordered, self.blocked)
+        return Reduction(tuple(self.moves), outcome, self._vector(), self.blocked)
 
 
 def _legs(quiver: Quiver) -> list[_Leg]:

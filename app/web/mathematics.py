@@ -12,8 +12,9 @@ from app.exact.value import Value
 from app.local.formal_type import Exponent
 
 _CONVERTER = LatexToMathML()
+_MOST_TERMS = 40
 _LONGEST = 4_000
-"""A formula longer than this is shown as its first characters: no reader and no layout profits from more."""
+"""Beyond these a formula is named, or cut, not set: no reader and no layout profits from more."""
 
 
 @lru_cache(maxsize=16_384)
@@ -26,7 +27,9 @@ def mathml(text: str) -> Markup:
 
 
 def value_mathml(value: Value, symbols: Sequence[str]) -> Markup:
-    """A value as a formula."""
+    """A value as a formula, or the number of its terms when it is a long sum."""
+    if len(value.terms) > _MOST_TERMS:
+        return Markup("<em>a sum of {} terms</em>").format(len(value.terms))
     text = latex(value, symbols)
     return mathml(text) if len(text) <= _LONGEST else Markup("<code>{}…</code>").format(text[:200])
 
