@@ -2,6 +2,7 @@
 
     python -m app [serve]            the local web application
     python -m app examine FILE       findings of a problem document, or of JSON Lines of them
+    python -m app construct FILE     a connection with the problem's orbits, and its verification record
     python -m app check FILE         certificates of findings checked against their problem
     python -m app schema NAME        JSON Schema of a document or result
 
@@ -32,6 +33,7 @@ _EXAMPLES = """examples:
   python -m app examine --type 21,111,111          the same for generic eigenvalues of these multiplicities
   python -m app examine --json - < problem.json    findings as JSON
   python -m app examine many.jsonl                 one document a line in, one result a line out
+  python -m app construct --type 21,111,111        matrices, exact where possible, with their checks
   python -m app check findings-and-problem.json    {"problem": …, "findings": …}
   python -m app schema problem                     JSON Schema of a problem document
 """
@@ -76,6 +78,15 @@ def _parser() -> argparse.ArgumentParser:
     examining.add_argument("--type", dest="shorthand", metavar="SHORTHAND", help="a type, for example 21,111,111")
     examining.add_argument("--json", action="store_true", help="findings as JSON")
     examining.set_defaults(run=_examine)
+
+    building = commands.add_parser("construct", help="a connection for a problem, verified")
+    building.add_argument("file", nargs="?", default="-", metavar="FILE", help="problem document; - reads input")
+    building.add_argument("--type", dest="shorthand", metavar="SHORTHAND", help="a type, for example 21,111,111")
+    building.add_argument("--numeric", action="store_true", help="a floating point directly on the orbits")
+    building.add_argument("--seed", type=int, default=0, metavar="N", help="of values and starts (default 0)")
+    building.add_argument("--time-limit", type=float, default=60.0, metavar="S", help="in seconds (default 60)")
+    building.add_argument("--json", action="store_true", help="the connection as JSON")
+    building.set_defaults(run=_construct)
 
     checking = commands.add_parser("check", help="check the certificates of findings against their problem")
     checking.add_argument("file", metavar="FILE", help='{"problem": …, "findings": …}; - reads input')
@@ -155,6 +166,29 @@ def _print_lines(lines: Iterator[bytes]) -> int:
 
 def _as_json(findings: "Findings", indent: int | None = None) -> str:
     return json.dumps(findings.as_json(), ensure_ascii=False, indent=indent)
+
+
+def _construct(given: argparse.Namespace) -> int:
+    from app.connection.construction import construct
+    from app.connection.text import construction_json, construction_text
+
+    if given.shorthand is not None:
+        from app.local.shorthand import problem_from_shorthand
+
+        problem = problem_from_shorthand(given.shorthand)
+    else:
+        from app.local.document import read_document
+
+        with _opened(given.file) as stream:
+            problem = read_document(_rest_of(stream, 0))
+    built = construct(problem, numeric=given.numeric, seed=given.seed, time_limit=given.time_limit)
+    if given.json:
+        print(json.dumps(construction_json(built), ensure_ascii=False, indent=2))
+    else:
+        print(construction_text(built).rstrip("\n"))
+    if built.connection is not None and not built.verified:
+        print("Not every check of the verification record holds.", file=sys.stderr)
+    return DONE
 
 
 def _check(given: argparse.Namespace) -> int:

@@ -12,6 +12,7 @@ compiled kernel beats arithmetic in the number field by far.
 
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
+from fractions import Fraction
 from functools import cached_property
 from typing import TYPE_CHECKING
 
@@ -57,7 +58,9 @@ class Field:
             table.append(tuple((factor, places[radical]) for factor, radical in row))
         return tuple(table)
 
-    def matrix(self, rows: Sequence[Sequence[Quotient | Value | int]], columns: int | None = None) -> "ExactMatrix":
+    def matrix(
+        self, rows: Sequence[Sequence[Quotient | Value | Fraction | int]], columns: int | None = None
+    ) -> "ExactMatrix":
         """The matrix with these entries; ``columns`` is needed where there are no rows.
 
         Entries must lie in the field (KeyError otherwise).
