@@ -12,6 +12,7 @@ from app.connection.middle_convolution import middle_convolution
 from app.connection.realisation import realise
 from app.exact.field import Field
 from app.exact.modular import algebra_dimension
+from tests.connection.conjugation import conjugator
 
 RATIONALS = Field((), (1,))
 
@@ -42,27 +43,6 @@ def generated_dimension(parts):
         for m in part
     ]
     return algebra_dimension(letters, prime)
-
-
-def conjugator(first, second):
-    """An invertible G with G·A = B·G for all coefficients of two tuples, or None."""
-    pairs = [(a, b) for x, y in zip(first, second, strict=True) for a, b in zip(x, y, strict=True)]
-    size = pairs[0][0].height
-    rows = []
-    for a, b in ((numbers(a), numbers(b)) for a, b in pairs):
-        for i in range(size):
-            for j in range(size):
-                row = [Fraction(0)] * (size * size)
-                for k in range(size):
-                    row[i * size + k] += a[k][j]
-                    row[k * size + j] -= b[i][k]
-                rows.append(row)
-    kernel = matrix([[x if x.denominator != 1 else int(x) for x in row] for row in rows]).kernel()
-    if kernel.width == 0:
-        return None
-    column = [row[0] for row in kernel.entries()]
-    found = RATIONALS.matrix([column[i * size : (i + 1) * size] for i in range(size)])
-    return found if found.rank() == size else None
 
 
 def dettweiler_reiter(residues, mu):
