@@ -134,7 +134,7 @@ class BlockReader:
         for key, coefficient in data.items():
             where = child(at, key) if isinstance(key, str) else at
             power = self._power(key, where)
-            value = self._numbers.read(coefficient, where)
+            value = self._numbers.read(coefficient, where, power.denominator if power is not None else 1)
             if power is None or value is None:
                 whole = False
                 continue

@@ -16,7 +16,7 @@ from app.local.numbers import Numbers
 from app.local.poles import PolesReader
 from app.local.problem import Problem, Reading
 
-__all__ = ["parse_json", "problem_from_json", "read_document"]
+__all__ = ["parse_json", "problem_from_json", "read_document", "read_json"]
 
 _REQUIRED = ("format", "name", "symbols", "poles")
 _KEYS = (*_REQUIRED, "base", "notes")
@@ -36,9 +36,13 @@ def read_document(text: str | bytes) -> Problem:
     return _Reader(faults).problem(data)
 
 
-def problem_from_json(data: object) -> Problem:
-    """The same from parsed JSON; raises Refused.  Duplicate keys can only be found in the text."""
-    return _Reader(Faults()).problem(data)
+def problem_from_json(data: object, faults: Faults | None = None) -> Problem:
+    """The same from parsed JSON; raises Refused.
+
+    Duplicate keys can only be found in the text: with ``data, faults = read_json(text)`` the faults found there are
+    reported together with those found here.
+    """
+    return _Reader(faults if faults is not None else Faults()).problem(data)
 
 
 class _Reader:

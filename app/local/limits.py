@@ -12,9 +12,9 @@ MAXIMUM_RAMIFICATION = 24
 MAXIMUM_ROOTS = 6
 MAXIMUM_NOTES = 10_000
 MAXIMUM_TERMS = 100_000
-"""Expanded terms in all numbers of one document together."""
+"""Expanded terms in all numbers of one document together; a coefficient of z^(−k/d) counts d times (conjugates)."""
 MAXIMUM_WORK = 2_000_000
-"""Elementary products in all numbers of one document together, about a microsecond each."""
+"""Elementary products in all numbers of one document together, about two microseconds each."""
 MAXIMUM_DIGITS = 400
 """Digits of a JSON integer, and of the common denominator of all numbers of one document."""
 MAXIMUM_PLACES = 1_000

@@ -12,7 +12,7 @@ from math import lcm
 
 from app.errors import NumberFault
 from app.exact.independence import independent_root_count
-from app.exact.limits import WORK_UNITS, Budget
+from app.exact.limits import WORK_UNITS, Budget, OverLimit
 from app.exact.number import parse_number
 from app.exact.value import Key, Value
 from app.local.faults import Faults
@@ -28,6 +28,23 @@ _TOO_LARGE = 10**MAXIMUM_DIGITS
 _A_NUMBER = 'an exact number, written as a string such as "1/3"'
 
 
+class _RestOfWork(Budget):
+    """What is left of the work for one document, when that is less than a number may take."""
+
+    __slots__ = ("used_up",)
+
+    def __init__(self, units: int) -> None:
+        super().__init__(units)
+        self.used_up = False
+
+    def foresee(self, units: int) -> None:
+        """Raise OverLimit when fewer than ``units`` are left."""
+        if units > self.left:
+            self.used_up = True
+            work = "elementary products for all numbers of the document together"
+            raise OverLimit(f"With this, expanding takes more than {MAXIMUM_WORK:,} {work}")
+
+
 class Numbers:
     """Reader of the numbers of one document; every fault goes to ``faults``."""
 
@@ -37,12 +54,16 @@ class Numbers:
         self._known: dict[str, Value] = {}
         self._terms_left = MAXIMUM_TERMS
         self._work_left = MAXIMUM_WORK
+        self._exhausted = False  # once a limit on all numbers together is passed, no more are read
         self._radicals: set[int] = set()
 
-    def read(self, data: object, at: str) -> Value | None:
-        """The value of one number of the document, or None after noting what is wrong with it."""
+    def read(self, data: object, at: str, copies: int = 1) -> Value | None:
+        """The value of one number of the document, or None after noting what is wrong with it.
+
+        ``copies`` is how often its terms count in the limit on all terms (conjugates of a ramified exponent).
+        """
         text = self._text(data, at)
-        if text is None or self._terms_left < 0:
+        if text is None or self._exhausted:
             return None
         value = self._known.get(text)
         if value is None:
@@ -50,12 +71,12 @@ class Numbers:
             if value is None:
                 return None
             self._known[text] = value
-        return self._counted(value, at)
+        return self._counted(value, at, copies)
 
     def read_position(self, data: object, at: str) -> Value | None:
         """The same for a position; its symbols do not count as used in a number."""
         text = self._text(data, at)
-        value = None if text is None or self._terms_left < 0 else self._parsed(text, at)
+        value = None if text is None or self._exhausted else self._parsed(text, at)
         return None if value is None else self._counted(value, at)
 
     def symbols_used(self) -> frozenset[str]:
@@ -90,7 +111,7 @@ class Numbers:
             self._faults.wrong_type(at, data, _A_NUMBER)
         elif isinstance(data, float):
             literal = data.literal if isinstance(data, WrittenFloat) else repr(data)
-            example = literal if len(literal) <= 30 and "e" not in literal.lower() else "0.5"
+            example = literal if len(literal) <= 30 and not set("eEfn") & set(literal) else "0.5"
             message = "A JSON number with a point or an exponent is not exact"
             self._faults.add(at, message, f'write it as a string, such as "{example}"')
         elif not -_TOO_LARGE < data < _TOO_LARGE:
@@ -107,27 +128,32 @@ class Numbers:
         value = number_at_sight(text, self._symbols)
         if value is not None:
             return value
-        budget = Budget(min(WORK_UNITS, self._work_left))
+        budget = Budget() if self._work_left >= WORK_UNITS else _RestOfWork(self._work_left)
         granted = budget.left
         try:
             value = parse_number(text, self._symbols, budget)
         except NumberFault as fault:
-            self._faults.add(at, f"{fault.message}, at character {fault.position + 1}", fault.expected)
+            expected = fault.expected
+            if isinstance(budget, _RestOfWork) and budget.used_up:
+                expected += "; later numbers were not read"
+                self._exhausted = True
+            self._faults.add(at, f"{fault.message}, at character {fault.position + 1}", expected)
             return None
         finally:
             self._work_left -= granted - budget.left
         self._radicals.update(value.radicals())
         return value
 
-    def _counted(self, value: Value, at: str) -> Value | None:
-        """The value, unless the document's numbers together have become too long."""
-        self._terms_left -= len(value.terms)
+    def _counted(self, value: Value, at: str, copies: int = 1) -> Value | None:
+        """The value, unless the numbers of the document have too many terms together."""
+        self._terms_left -= len(value.terms) * copies
         if self._terms_left >= 0:
             return value
+        self._exhausted = True
         self._faults.add(
             at,
             f"Here the numbers of the document have more than {MAXIMUM_TERMS} terms together",
-            f"at most {MAXIMUM_TERMS} terms; later numbers were not read",
+            f"at most {MAXIMUM_TERMS}, counting conjugates of fractional powers; later numbers were not read",
         )
         return None
 

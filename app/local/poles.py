@@ -137,7 +137,8 @@ class PolesReader:
 
     def _check_positions(self) -> None:
         """Positions must be distinct, and a position that is a symbol may occur nowhere else."""
-        used = self._numbers.symbols_used()
+        open_positions = any(position and position.value and position.value.symbols() for position in self._positions)
+        used = self._numbers.symbols_used() if open_positions else frozenset()
         seen: dict[Value | None, int] = {}
         for number, position in enumerate(self._positions):
             if position is None:

@@ -5,7 +5,7 @@ from typing import Any
 import pytest
 
 from app.errors import Place, Refused
-from app.local.document import problem_from_json
+from app.local.document import problem_from_json, read_json
 from tests.local.document_parts import block, log_pole, make, pole
 
 Data = dict[str, Any]
@@ -301,3 +301,37 @@ def test_every_place_can_be_sent_as_utf8() -> None:
     for data in ({**good(), "\udc00": 1}, good(symbols=["a", "b", "\udc00"]), value("\udc00")):
         place = one_place(data)
         (place.at + place.message + place.expected).encode("utf-8")
+
+
+def test_all_numbers_together_are_bounded() -> None:
+    names = [f"s{k}" for k in range(20)]
+    many_terms = [(f"({'+'.join(names)})^2+{k}", [1]) for k in range(400)]
+    places = places_of(make(*[log_pole(j, *many_terms) for j in range(2)], symbols=names))
+    assert len(places) == 1
+    assert "more than 100000 terms together" in places[0].message
+    assert places[0].at.startswith("/poles/1/blocks/0/residue/")
+
+
+def test_conjugates_count_in_the_bound_on_all_terms() -> None:
+    coefficients = {f"{k}/24": f"{k}+sqrt(2)" for k in range(1, 1536)}
+    places = places_of(make(*[pole(j, block(dict(coefficients), (0, [1]))) for j in range(3)]))
+    assert len(places) == 1
+    assert "more than 100000 terms together" in places[0].message
+
+
+def test_the_work_for_all_numbers_together_is_bounded() -> None:
+    costly = [(f"(a+b+t)^30-(a+b+t)^30+{k}", [1]) for k in range(400)]
+    places = places_of(make(log_pole(0, *costly), symbols=["a", "b", "t"]))
+    assert len(places) == 1
+    assert "for all numbers of the document together, at character" in places[0].message
+    assert "later numbers were not read" in places[0].expected
+
+
+def test_faults_of_the_text_are_reported_with_the_others() -> None:
+    data, faults = read_json('{"format": "x", "format": "y"}')
+    with pytest.raises(Refused) as caught:
+        problem_from_json(data, faults)
+    assert [place.message for place in caught.value.places][:2] == [
+        'The key "format" stands more than once', "The key name is missing",
+    ]
+    assert len(caught.value.places) == 5
