@@ -7,6 +7,7 @@ parsed JSON come in, a valid ``Problem`` (or a refusal that lists every fault wi
     formal_type      eigenvalues, exponents, blocks, positions, poles: frozen values
     conjugates       Galois conjugates of exponents, compared exactly
     problem          the whole problem; always valid
+    newton           slopes and Newton polygon of a pole
     orbit            irregularity, orbit dimensions, rigidity index, expected dimension
     limits           how large a document may be
     faults           the list of faults with their JSON pointers
