@@ -13,14 +13,19 @@ function field(name) {
   return form.elements.namedItem(name);
 }
 
-// Only texts that differ from what the server last knew are posted; absent fields are unchanged.
+// Fields whose text differs from what the server last knew; absent fields are unchanged.
+function changedElements() {
+  return [...form.elements].filter(
+    (e) => e.name && e.name !== "action" && e.type !== "hidden" && e.value !== e.dataset.known);
+}
+
+function isChanged() {
+  return changedElements().length > 0;
+}
+
 function changedFields() {
   const body = new URLSearchParams();
-  for (const element of form.elements) {
-    if (element.name && element.name !== "action" && element.type !== "hidden" && element.value !== element.dataset.known) {
-      body.append(element.name, element.value);
-    }
-  }
+  for (const element of changedElements()) body.append(element.name, element.value);
   body.append("revision", field("revision").value);
   body.append("structure", field("structure").value);
   body.append("shown", JSON.stringify(marks));
@@ -40,11 +45,13 @@ function say(sentence) {
 
 async function post(action) {
   clearTimeout(timer);
+  if (!action && !isChanged()) return;
   if (request) request.abort();
   const mine = new AbortController();
   request = mine;
   const body = changedFields();
   const sent = new Map(body);
+  form.setAttribute("aria-busy", "true");
   if (action) body.append("action", action);
   try {
     const answer = await fetch("/desk", { method: "POST", body, headers: { Accept: "application/json" }, signal: mine.signal });
@@ -57,7 +64,10 @@ async function post(action) {
   } catch (fault) {
     if (fault.name !== "AbortError") say("The program does not answer. What you typed is still here; it is sent with the next change.");
   } finally {
-    if (request === mine) request = null;
+    if (request === mine) {
+      request = null;
+      form.removeAttribute("aria-busy");
+    }
   }
 }
 
@@ -131,11 +141,16 @@ form.addEventListener("input", (event) => {
   clearTimeout(timer);
   timer = setTimeout(() => post(""), 250);
 });
-form.addEventListener("change", () => post(""));
+form.addEventListener("change", () => {
+  clearTimeout(timer);
+  // a moment later, so that Enter, which submits as well, posts once
+  timer = setTimeout(() => post(""), 0);
+});
 document.addEventListener("submit", (event) => {
   if (event.target !== form) return;
   event.preventDefault();
-  post(event.submitter?.value ?? "save");
+  const inShorthand = document.activeElement?.name === "shorthand" && event.submitter?.value === "save";
+  post(inShorthand ? "read-shorthand" : event.submitter?.value ?? "save");
 });
 
 const file = document.getElementById("document-file");

@@ -39,7 +39,8 @@ def svg(
     ``name`` begins the ids in it, so that several pictures stand on one page; ``wrap(id, markup)`` may put something
     round a vertex; ``alone`` adds a namespace and style for a file.  Cost: linear in what is drawn.
     """
-    parts = [_head(diagram, title, description, name, alone=alone, scale=_FULL)]
+    role = "img" if wrap is None else "group"
+    parts = [_head(diagram, title, description, name, alone=alone, scale=_FULL, role=role)]
     parts += [_link(link) for link in diagram.links]
     parts += [_fold(fold) for fold in diagram.folds]
     for node in diagram.nodes:
@@ -59,12 +60,14 @@ def small_svg(diagram: Diagram, *, title: str, description: str, name: str) -> s
     return "".join(parts)
 
 
-def _head(diagram: Diagram, title: str, description: str, name: str, *, alone: bool, scale: float) -> str:
+def _head(
+    diagram: Diagram, title: str, description: str, name: str, *, alone: bool, scale: float, role: str = "img"
+) -> str:
     left, top, width, height = diagram.box
     namespace = ' xmlns="http://www.w3.org/2000/svg"' if alone else ""
     style = f"<style>{STYLE}</style>" if alone else ""
     return (
-        f'<svg{namespace} class="diagram" role="img" aria-labelledby="{name}-title {name}-description" '
+        f'<svg{namespace} class="diagram" role="{role}" aria-labelledby="{name}-title {name}-description" '
         f'width="{_n(width * scale)}" height="{_n(height * scale)}" '
         f'viewBox="{_n(left)} {_n(top)} {_n(width)} {_n(height)}">{style}'
         f'<title id="{name}-title">{escape(title)}</title><desc id="{name}-description">{escape(description)}</desc>'

@@ -15,6 +15,7 @@ from app.desk.draft import Draft
 from app.desk.reading import FieldFault
 from app.drawing.layout import place
 from app.drawing.svg import small_svg, svg
+from app.exact.number import write_number
 from app.existence.verdict import Decomposition, FuchsDefect, NotARoot, Reflections, Verdict
 from app.findings.findings import Findings
 from app.local.formal_type import Block
@@ -70,7 +71,7 @@ class SchemeEntry:
 class SchemeColumn:
     """One pole in the Riemann scheme."""
 
-    position: Markup
+    position: str
     entries: tuple[SchemeEntry, ...]
 
 
@@ -271,7 +272,8 @@ def _figures(findings: Findings) -> list[FigureContext]:
 def _scheme(problem: Problem) -> list[SchemeColumn]:
     columns = []
     for pole in problem.poles:
-        position = Markup("∞") if pole.at.value is None else value_mathml(pole.at.value, problem.symbols)
+        # as text: a heading that is a formula alone has no text for screen readers
+        position = "x = ∞" if pole.at.value is None else f"x = {write_number(pole.at.value, problem.symbols)}"
         shown = pole.blocks[: 2 * LIST_SHOWN]
         columns.append(SchemeColumn(position, tuple(_scheme_entry(problem, block) for block in shown)))
     return columns

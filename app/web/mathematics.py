@@ -9,9 +9,11 @@ from math_core import LatexToMathML
 
 from app.exact.latex import latex, latex_laurent
 from app.exact.value import Value
+from app.exact.writing import ordered_terms
 from app.local.formal_type import Exponent
 
 _CONVERTER = LatexToMathML()
+_TERMS_TOGETHER = 5
 _MOST_TERMS = 40
 _LONGEST = 4_000
 """Beyond these a formula is named, or cut, not set: no reader and no layout profits from more."""
@@ -30,7 +32,18 @@ def value_mathml(value: Value, symbols: Sequence[str]) -> Markup:
     """A value as a formula, or the number of its terms when it is a long sum."""
     if len(value.terms) > _MOST_TERMS:
         return Markup("<em>a sum of {} terms</em>").format(len(value.terms))
-    text = latex(value, symbols)
+    if len(value.terms) <= _TERMS_TOGETHER:
+        return _formula(latex(value, symbols))
+    # in several formulas, because browsers break lines between formulas and not inside one
+    terms = ordered_terms(value, symbols)
+    pieces = [
+        latex(Value.from_terms(terms[k : k + _TERMS_TOGETHER]), symbols) for k in range(0, len(terms), _TERMS_TOGETHER)
+    ]
+    signed = [pieces[0], *(piece if piece.startswith("-") else "+" + piece for piece in pieces[1:])]
+    return Markup(" ").join(map(_formula, signed))
+
+
+def _formula(text: str) -> Markup:
     return mathml(text) if len(text) <= _LONGEST else Markup("<code>{}…</code>").format(text[:200])
 
 
