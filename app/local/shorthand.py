@@ -2,7 +2,8 @@
 
     types    = pole { "," pole }
     pole     = entries | groups
-    groups   = "(" (groups | entries) ")" [ "^" count ] { … }
+    groups   = "(" (groups | entries) ")" [ "_" power ] [ "^" count ] { … }
+    power    = number [ "/" number ]
     entries  = entry [ "^" count ] { … }
 
 An entry is the multiplicity of an eigenvalue: one digit, or a number in brackets.  In a run of entries that
@@ -10,23 +11,31 @@ holds blanks every number between blanks is one entry, so ``12 1`` is twelve and
 to the count.  Parentheses nest to one depth d in a pole, whose order then is d + 1: the outermost groups have equal
 coefficients of z^(−d), the innermost are the classes of distinct exponents.
 
+Ramified poles write the power of 1/z after every parenthesis: ``(1)_3/2`` is one Galois orbit of u1·z^(−3/2), of
+ramification index 2, and ``(1)_1/2(1)_0`` adds a block of exponent 0.  Powers fall from the outside to the inside,
+depths may differ, and an exponent has the written terms and no others: ``((1)_1(1)_1)_3/2`` is a pole of rank 4 with
+the two orbits of u1·z^(−3/2) + u2·z^(−1) and of u1·z^(−3/2) + u3·z^(−1).  The ramification index of a block is the
+common denominator of the powers round it, and every entry counts so many times in the rank.  With powers or without
+is a matter of the whole pole; an unramified one may be written both ways, ``(1)_1(1)_0`` as well as ``(1)(1)``.
+
 Generic symbols: eigenvalues a1, a2, … at the first pole, b1, b2, … at the second, and so on through an alphabet
 without i, l, o and the letters used otherwise; coefficients of exponents u1, u2, … at the first irregular pole, v1,
 v2, … at the next; open positions t1, t2, ….
 """
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, field, replace
 from fractions import Fraction
 from itertools import groupby
 
 from app.errors import Place, Refused
 from app.exact.value import Value, total
+from app.local.conjugates import Conjugate, conjugates
 from app.local.formal_type import Block, Eigenvalue, Exponent, Pole, Position
 from app.local.limits import MAXIMUM_POLES, MAXIMUM_SYMBOLS
 from app.local.orbit import irregularity_of_endomorphisms
 from app.local.problem import ForcedValue, Problem
-from app.local.shorthand_grammar import Group, parse_shorthand
+from app.local.shorthand_grammar import Branch, Group, Tree, parse_shorthand
 
 _EIGENVALUE_LETTERS = "abcdfghkmnprs"
 _COEFFICIENT_LETTERS = "uvw"
@@ -52,7 +61,7 @@ def problem_from_shorthand(text: str) -> Problem:
     return Problem(solved, symbols, name=" ".join(text.split()), forced=place)
 
 
-def _generic_poles(groups: list[Group]) -> tuple[Pole, ...]:
+def _generic_poles(groups: list[Group | Tree]) -> tuple[Pole, ...]:
     """Poles with generic eigenvalues (the last one too) and exponents, and their positions."""
     eigenvalue_names = _letters(_EIGENVALUE_LETTERS)
     coefficient_names = _letters(_COEFFICIENT_LETTERS)
@@ -62,7 +71,7 @@ def _generic_poles(groups: list[Group]) -> tuple[Pole, ...]:
         bare.append(Pole(Position(None), tuple(_Blocks(*letters).of(group))))
     weights = [(irregularity_of_endomorphisms(pole), group.depth) for pole, group in zip(bare, groups, strict=True)]
     most = max(weights)
-    infinity = weights.index(most) if most > (0, 0) else len(bare) - 1
+    infinity = weights.index(most) if most[1] > 0 else len(bare) - 1
     finite = _finite_positions()
     return tuple(
         replace(pole, at=Position(None) if number == infinity else next(finite)) for number, pole in enumerate(bare)
@@ -94,10 +103,13 @@ class _Blocks:
     coefficients: int = 0
     found: list[Block] = field(default_factory=list)
 
-    def of(self, group: Group) -> list[Block]:
+    def of(self, group: Group | Tree) -> list[Block]:
         """The blocks of a pole in the order of the shorthand."""
-        if group.depth == 0:
-            self._block(group, ())
+        if isinstance(group, Tree):
+            for branch in group.branches:
+                self._branch(branch, ())
+        elif group.depth == 0:
+            self._block(group.parts, ())
         else:
             self._descend(group, ())
         return self.found
@@ -106,17 +118,27 @@ class _Blocks:
         for part in group.parts:
             if isinstance(part, int):
                 raise ValueError("a group above depth 0 has groups as its parts")
-            self.coefficients += 1
-            coefficient = Value.symbol(f"{self.coefficient_letter}{self.coefficients}")
-            terms = (*above, (Fraction(group.depth), coefficient))
+            terms = (*above, (Fraction(group.depth), self._coefficient()))
             if part.depth == 0:
-                self._block(part, terms)
+                self._block(part.parts, terms)
             else:
                 self._descend(part, terms)
 
-    def _block(self, group: Group, terms: tuple[tuple[Fraction, Value], ...]) -> None:
+    def _branch(self, branch: Branch, above: tuple[tuple[Fraction, Value], ...]) -> None:
+        terms = (*above, (branch.power, self._coefficient())) if branch.power else above
+        inner = [part for part in branch.parts if isinstance(part, Branch)]
+        for part in inner:
+            self._branch(part, terms)
+        if not inner:
+            self._block(branch.parts, terms)
+
+    def _coefficient(self) -> Value:
+        self.coefficients += 1
+        return Value.symbol(f"{self.coefficient_letter}{self.coefficients}")
+
+    def _block(self, parts: Sequence[object], terms: tuple[tuple[Fraction, Value], ...]) -> None:
         residue = []
-        for part in group.parts:
+        for part in parts:
             if not isinstance(part, int):
                 raise ValueError("a group of depth 0 has multiplicities as its parts")
             self.eigenvalues += 1
@@ -152,17 +174,17 @@ def _with_forced_value(poles: tuple[Pole, ...]) -> tuple[ForcedValue, tuple[Pole
 def to_shorthand(problem: Problem) -> str | None:
     """The shorthand of the problem's multiplicities, or None where it has none.
 
-    It has none when some class is not semisimple or some block is ramified.  Values, positions and the reading are
-    not part of it; blocks with equal leading coefficients are put side by side.
+    It has none when some class is not semisimple.  Values, positions and the reading are not part of it; blocks with
+    equal leading coefficients are put side by side, and at a ramified pole those with conjugate ones.
     """
-    if problem.ramified:
-        return None
     if any(e.jordan[0] > 1 for pole in problem.poles for block in pole.blocks for e in block.residue):
         return None
     return ",".join(_written_pole(pole) for pole in problem.poles)
 
 
 def _written_pole(pole: Pole) -> str:
+    if pole.ramified:
+        return _written_branches([(block, conjugates(block.exponent)) for block in pole.blocks], 0)
     depth = max(int(block.exponent.slope) for block in pole.blocks)
     if depth == 0:
         return _written_entries(pole.blocks[0])
@@ -174,10 +196,27 @@ def _written_groups(blocks: list[tuple[Block, dict[Fraction, Value]]], depth: in
     parts: dict[Value | None, list[tuple[Block, dict[Fraction, Value]]]] = {}
     for block, coefficients in blocks:
         parts.setdefault(coefficients.get(Fraction(depth)), []).append((block, coefficients))
-    inner = [
-        _written_groups(part, depth - 1) if depth > 1 else _written_entries(part[0][0]) for part in parts.values()
-    ]
+    inner = [_written_groups(part, depth - 1) if depth > 1 else _written_entries(part[0][0]) for part in parts.values()]
     return "".join(_repeated(f"({text})", len(list(run)), longest=5) for text, run in groupby(inner))
+
+
+def _written_branches(blocks: list[tuple[Block, tuple[Conjugate, ...]]], length: int) -> str:
+    """Blocks whose exponents have conjugate first ``length`` terms, grouped by the next term up to conjugation.
+
+    The orbits of two beginnings are equal or disjoint, so any member in common tells that they are equal.
+    """
+    parts: dict[Conjugate, list[tuple[Block, tuple[Conjugate, ...]]]] = {}
+    for block, orbit in blocks:
+        beginnings = {conjugate[: length + 1] for conjugate in orbit}
+        known = next((beginning for beginning in beginnings if beginning in parts), orbit[0][: length + 1])
+        parts.setdefault(known, []).append((block, orbit))
+    written = []
+    for beginning, part in parts.items():
+        power = beginning[length][0] if len(beginning) > length else Fraction(0)
+        ends = len(part) == 1 and len(part[0][0].exponent.terms) <= length + 1
+        inner = _written_entries(part[0][0]) if ends else _written_branches(part, length + 1)
+        written.append(f"({inner})_{power}")
+    return "".join(_repeated(text, len(list(run)), longest=5) for text, run in groupby(written))
 
 
 def _written_entries(block: Block) -> str:
