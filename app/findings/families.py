@@ -99,7 +99,7 @@ def _log_families(rank: int, shapes: list[Drops]) -> list[Family]:
     if rank % 2 == 0 and rank >= 4:
         even = Family(f"Simpson's even family, order {rank}", _SIMPSON)
         named.append(([ones, (half, half), (half, half - 1, 1)], even))
-    if rank % 2 == 1:
+    if rank % 2 == 1 and rank >= 5:
         odd = Family(f"Simpson's odd family, order {rank}", _SIMPSON)
         named.append(([ones, (half, half, 1), (half + 1, half)], odd))
     return [family for tuple_, family in named if sorted(tuple_) == shapes]
