@@ -12,8 +12,10 @@ command line, 3 out of time.  Modules that take time to import are imported by t
 
 import argparse
 import json
+import signal
 import sys
 from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
 from pathlib import Path
 from typing import IO, TYPE_CHECKING
 
@@ -181,7 +183,8 @@ def _construct(given: argparse.Namespace) -> int:
 
         with _opened(given.file) as stream:
             problem = read_document(_rest_of(stream, 0))
-    built = construct(problem, numeric=given.numeric, seed=given.seed, time_limit=given.time_limit)
+    with _alarm(given.time_limit):
+        built = construct(problem, numeric=given.numeric, seed=given.seed, time_limit=given.time_limit)
     if given.json:
         print(json.dumps(construction_json(built), ensure_ascii=False, indent=2))
     else:
@@ -189,6 +192,25 @@ def _construct(given: argparse.Namespace) -> int:
     if built.connection is not None and not built.verified:
         print("Not every check of the verification record holds.", file=sys.stderr)
     return DONE
+
+
+@contextmanager
+def _alarm(seconds: float) -> Iterator[None]:
+    """Stop what does not look at its time limit, half a second after it, where the system has timers of this kind."""
+    if not hasattr(signal, "setitimer"):
+        yield
+        return
+
+    def stop(_number: int, _frame: object) -> None:
+        raise OutOfTime(f"The time limit of {seconds:g} s ran out.")
+
+    before = signal.signal(signal.SIGALRM, stop)
+    signal.setitimer(signal.ITIMER_REAL, max(seconds, 0.0) + 0.5)
+    try:
+        yield
+    finally:
+        signal.setitimer(signal.ITIMER_REAL, 0)
+        signal.signal(signal.SIGALRM, before)
 
 
 def _check(given: argparse.Namespace) -> int:

@@ -4,7 +4,7 @@ Every step is undone by the middle convolution with the opposite parameter and t
 known from the data, so that exact kernels check them and floating kernels need not guess.
 """
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from app.connection.middle_convolution import middle_convolution, twisted
 from app.connection.realisation import M
@@ -12,8 +12,15 @@ from app.connection.stages import Descent, Stage, Step, principal_scalars
 from app.progress import Progress
 
 
-def ascend(descent: Descent, bottom: Sequence[Sequence[M]], progress: Progress) -> list[list[M]]:
+def ascend(
+    descent: Descent,
+    bottom: Sequence[Sequence[M]],
+    progress: Progress,
+    shorten: Callable[[list[list[M]]], list[list[M]]] = lambda parts: parts,
+) -> list[list[M]]:
     """Principal parts of the problem, from parts of the descent's last stage (residues adding up to its excess).
+
+    ``shorten`` is a common gauge applied after every step, to keep entries short.
 
     Raises NotTheRank where the given parts are not what they should be.
     Cost: one middle convolution a step, of rank up to the problem's.
@@ -22,7 +29,7 @@ def ascend(descent: Descent, bottom: Sequence[Sequence[M]], progress: Progress) 
     for number, step in enumerate(reversed(descent.steps)):
         progress.check()
         progress.report(f"ascent: rank {step.lower.rank} to {step.upper.rank}", number / len(descent.steps))
-        parts = _up(step, parts)
+        parts = shorten(_up(step, parts))
     return parts
 
 

@@ -29,7 +29,9 @@ from app.connection.generic_values import generic_values
 from app.connection.rank_two import chart
 from app.connection.stages import Descent, Stage, descend, stage_of
 from app.connection.verification import problem_at, verify
-from app.errors import Failed, OutOfTime, Refused
+from app.errors import Failed, OutOfTime, Refused, TooLarge
+from app.exact.diagonal_gauge import diagonally_shortened
+from app.exact.function_matrix import FunctionMatrix
 from app.exact.matrix import ExactMatrix, NotTheRank
 from app.exact.number import write_number
 from app.exact.quotient import Quotient
@@ -45,6 +47,8 @@ if TYPE_CHECKING:
     from app.connection.float_matrix import FloatMatrix
 
 DEFAULT_TIME_LIMIT = 60.0
+MAXIMUM_RANK = 32
+MAXIMUM_SIZE = 2048
 _SEEDS = 5
 
 
@@ -84,13 +88,14 @@ def construct(
         seed: chooses the values for symbols and the starts of numerical searches.
         time_limit: in seconds, None for none; ``progress`` replaces it where given.
 
-    Raises Refused for ramified data, for local monodromies and for a field too large; OutOfTime; Failed where the
-    construction contradicts the verdict (a fault of the program).
+    Raises Refused for ramified data, for local monodromies and for a field too large; TooLarge; OutOfTime; Failed
+    where the construction contradicts the verdict (a fault of the program).
     """
     if problem.reading == "local_monodromy":
         raise Refused("A connection is constructed from residues; this problem gives local monodromies.")
     if problem.ramified:
         raise Refused("Explicit connections are built for unramified data only; this problem has a ramified block.")
+    _check_size(problem)
     watch = progress or (Unlimited() if time_limit is None else Deadline(time_limit, OutOfTime))
     watch.report("existence")
     quiver = quiver_of(problem)
@@ -109,6 +114,18 @@ def construct(
     return _floating(problem, verdict, seed, watch)
 
 
+def _check_size(problem: Problem) -> None:
+    """Refuse, before any work, what would need too large matrices: the tangent maps have size n²(r + 1)."""
+    if problem.rank > MAXIMUM_RANK:
+        raise TooLarge(f"Connections are constructed up to rank {MAXIMUM_RANK}; this problem has rank {problem.rank}.")
+    order = max((int(block.exponent.slope) for pole in problem.poles for block in pole.blocks), default=0)
+    if problem.rank**2 * (order + 1) > MAXIMUM_SIZE:
+        raise TooLarge(
+            f"Connections are constructed while rank² · order of the worst pole is at most {MAXIMUM_SIZE}; here it is "
+            f"{problem.rank**2 * (order + 1)}."
+        )
+
+
 def _exact(problem: Problem, verdict: Verdict, descent: Descent, progress: Progress) -> Construction:
     """Exact matrices from rank 1, or from a chart of rank 2."""
     values = [Quotient.of(value) for value in _stage_values(stage_of(problem))]
@@ -124,7 +141,7 @@ def _exact(problem: Problem, verdict: Verdict, descent: Descent, progress: Progr
             bottom = made.parts(exact_field([*values, *entries]))
             method = f"Exact, on a chart of rank 2 with {len(accessory)} accessory parameters"
             method += ", then by middle convolutions and twists." if descent.steps else "."
-        parts = ascend(descent, bottom, progress)
+        parts = ascend(descent, bottom, progress, _shortened)
     except NotTheRank as error:
         raise Failed(f"The ascent met a matrix that contradicts the verdict: {error}") from error
     connection = Connection(
@@ -135,6 +152,15 @@ def _exact(problem: Problem, verdict: Verdict, descent: Descent, progress: Progr
         accessory,
     )
     return _finished(problem, verdict, connection, method, progress)
+
+
+def _shortened(parts: list[list[ExactMatrix]]) -> list[list[ExactMatrix]]:
+    """A common diagonal gauge that makes entries with symbols shorter."""
+    flat = [matrix for part in parts for matrix in part if isinstance(matrix, FunctionMatrix)]
+    if not flat:
+        return parts
+    shorter = iter(diagonally_shortened(flat))
+    return [[next(shorter) for _ in part] for part in parts]
 
 
 def _floating(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:

@@ -3,7 +3,9 @@
 Matrices with symbols are checked as matrices of rational functions wherever equality is claimed.  A rank that has to be
 *large* is proved by one specialisation (``exact/modular``).  A semisimple class needs no elimination with symbols: if
 Π (L − ξ) = 0 over the distinct eigenvalues, the kernels of the L − ξ span everything; each can only grow under
-specialisation, so if they have the asked dimensions there, which add up to n, they have them generically.
+specialisation, so if they have the asked dimensions there, which add up to n, they have them generically.  And the
+product is 0 as soon as it is 0 on vectors whose images under powers of L span everything, which again is proved
+by the specialisation: one vector for a class with simple eigenvalues.
 """
 
 from collections.abc import Iterator, Sequence
@@ -120,10 +122,10 @@ def _class_of(matrix: ExactMatrix, eigenvalues: Sequence[Eigenvalue], chosen: Sp
     """Whether a matrix lies in the class, and the dimensions of the kernels of (L − ξ)^k found."""
     semisimple = all(eigenvalue.jordan[0] == 1 for eigenvalue in eigenvalues)
     if semisimple and matrix.field.symbols:
-        product = matrix.shifted(-eigenvalues[0].value)
-        for eigenvalue in eigenvalues[1:]:
-            product = product @ matrix.shifted(-eigenvalue.value)
         image = chosen.matrix(matrix.entries())
+        product = matrix.scalar(matrix.height, 1).take_columns(generating_columns(image, chosen.prime))
+        for eigenvalue in eigenvalues:
+            product = matrix.shifted(-eigenvalue.value) @ product
         if product.is_zero and len({chosen.value(e.value) for e in eigenvalues}) == len(eigenvalues):
             nullities = [_modular_nullity(image, chosen.value(e.value), chosen.prime) for e in eigenvalues]
             return _compared(eigenvalues, [(nullity,) for nullity in nullities])
@@ -140,6 +142,28 @@ def _class_of(matrix: ExactMatrix, eigenvalues: Sequence[Eigenvalue], chosen: Sp
             nullities.append(matrix.height - power.rank())
         found.append(tuple(nullities))
     return _compared(eigenvalues, found)
+
+
+def generating_columns(image: ModularMatrix, prime: int) -> list[int]:
+    """Indices of unit vectors whose images under powers of a matrix modulo a prime span everything; few of them."""
+    size = len(image)
+    spans = []
+    for j in range(size):
+        vector = [int(i == j) for i in range(size)]
+        span = [vector]
+        for _ in range(size - 1):
+            vector = [sum(row[k] * vector[k] for k in range(size)) % prime for row in image]
+            span.append(vector)
+        spans.append(span)
+    chosen: list[int] = []
+    rows: ModularMatrix = []
+    reached = 0
+    while reached < size:
+        ranks = [modular_rank(rows + spans[j], prime) for j in range(size)]
+        best = max(range(size), key=lambda j: (ranks[j], j))
+        chosen.append(best)
+        rows, reached = rows + spans[best], ranks[best]
+    return chosen
 
 
 def _compared(eigenvalues: Sequence[Eigenvalue], found: Sequence[tuple[int, ...]]) -> tuple[bool, str]:

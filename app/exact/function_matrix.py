@@ -146,11 +146,15 @@ class FunctionMatrix(ExactMatrix):
                 continue
             inverse = _lowest(content[1], content[0])
             for row in left._rows:
-                row[j] = _product(row[j], inverse)
-            right._rows[j] = [_product(entry, content) for entry in right._rows[j]]
+                row[j] = reduced_product(row[j], inverse)
+            right._rows[j] = [reduced_product(entry, content) for entry in right._rows[j]]
             for row in section._rows:
-                row[j] = _product(row[j], inverse)
+                row[j] = reduced_product(row[j], inverse)
         return left, right, section
+
+    def copied_rows(self) -> list[Row]:
+        """The entries as pairs of polynomials in rows of their own, for other kernels of this room."""
+        return [list(row) for row in self._rows]
 
     def rank(self) -> int:
         """The rank, over the field."""
@@ -199,7 +203,8 @@ def _sum(first: Fractional, second: Fractional) -> Fractional:
     return _lowest(first[0] * second[1] + second[0] * first[1], first[1] * second[1])
 
 
-def _product(first: Fractional, second: Fractional) -> Fractional:
+def reduced_product(first: Fractional, second: Fractional) -> Fractional:
+    """The product of two entries, in lowest terms."""
     if not first[0]:
         return first
     return _lowest(first[0] * second[0], first[1] * second[1])

@@ -7,7 +7,7 @@ import pytest
 from app.connection.connection import Check, exact_parts
 from app.connection.construction import Construction, construct
 from app.connection.verification import verify
-from app.errors import OutOfTime, Refused
+from app.errors import OutOfTime, Refused, TooLarge
 from app.exact.quotient import Quotient
 from app.exact.value import Value
 from app.local.orbit import moduli_dimension
@@ -135,6 +135,18 @@ def test_number_fields():
     assert built.connection.kind == "exact"
 
 
+def test_number_fields_with_symbols():
+    problem = log_problem(
+        [("a", [1, 1]), ("i", [1])],
+        [("b", [1]), ("sqrt(2)", [1]), ("0", [1])],
+        [("2*i", [1]), ("c", [1]), ("*", [1])],
+        symbols=("a", "b", "c"),
+    )
+    built = construct(problem)
+    assert_verified(built)
+    assert built.connection.kind == "exact"
+
+
 def test_open_positions_stay():
     built = construct(problem_from_shorthand("21,21,21,21"))
     assert [str(pole.at.value) for pole in built.connection.poles][2] == "Value(t1)"
@@ -210,6 +222,19 @@ def test_ramified_data_are_refused():
     problem = general_problem([("infinity", [({"1/2": "1"}, [("0", [1])])]), ("0", [({}, [("1", [1]), ("-1", [1])])])])
     with pytest.raises(Refused, match="unramified"):
         construct(problem)
+
+
+def test_too_large_problems_are_refused_before_any_work():
+    with pytest.raises(TooLarge, match="rank 40"):
+        construct(problem_from_shorthand("[39]1,1^40,1^40"))
+    deep = general_problem(
+        [
+            ("infinity", [({"64": "1"}, [("0", [1] * 10)]), ({}, [("0", [1] * 10)])]),
+            ("0", [({}, [("0", [1] * 20)])]),
+        ]
+    )
+    with pytest.raises(TooLarge, match="order"):
+        construct(deep)
 
 
 def test_time_limit():

@@ -130,3 +130,34 @@ def test_dimension_of_generated_algebras():
     assert algebra_dimension([unit], prime) == 3
     assert algebra_dimension([unit, diagonal], prime) == 9
     assert algebra_dimension([diagonal, upper], prime) == 6
+
+
+def test_diagonal_gauge_is_a_conjugation_and_shortens():
+    from app.exact.diagonal_gauge import diagonally_shortened
+
+    a, b = Value.symbol("a"), Value.symbol("b")
+    long = (a + b) * (a - b * 3) * (a * 2 + 1)
+    field = field_of([Quotient.of(a), Quotient.of(b)])
+    first = field.matrix([[a, long, long * b], [1, b, 0], [1, a + b, 3]])
+    second = field.matrix([[0, long, 0], [1, b, 1], [0, 0, a]])
+    moved = diagonally_shortened([first, second])
+
+    def terms(matrices):
+        return sum(len(e.numerator.terms) + len(e.denominator.terms) for m in matrices for r in m.entries() for e in r)
+
+    assert terms(moved) < terms([first, second])
+    # one diagonal D for both: D A = A' D, where the ratios d_i / d_0 are read off the second column and third row
+    before, after = first.entries(), moved[0].entries()
+    ratios = [Quotient.of(1), before[0][1] / after[0][1], before[0][2] / after[0][2]]
+    diagonal = field.matrix([[ratios[i] if i == j else 0 for j in range(3)] for i in range(3)])
+    for old, new in zip([first, second], moved, strict=True):
+        assert (diagonal @ old - new @ diagonal).is_zero
+
+
+def test_diagonal_gauge_leaves_other_matrices_alone():
+    from app.exact.diagonal_gauge import diagonally_shortened
+
+    field = field_of([Quotient.of(Value.symbol("a") * parse_number("i"))])
+    matrix = field.matrix([[Value.symbol("a"), 1], [0, parse_number("i")]])
+    assert diagonally_shortened([matrix])[0].entries() == matrix.entries()
+    assert diagonally_shortened([]) == []
