@@ -48,9 +48,7 @@ def test_named_relations(texts, relations):
 @given(st.lists(values, max_size=5), st.data())
 def test_relations_hold_and_count_is_right(generators, data):
     # linear combinations, so that relations do occur
-    combined = [
-        total(v * data.draw(rationals) for v in generators) for _ in range(data.draw(st.integers(0, 3)))
-    ]
+    combined = [total(v * data.draw(rationals) for v in generators) for _ in range(data.draw(st.integers(0, 3)))]
     numbers = generators + combined
     relations = integer_relations(numbers)
     for relation in relations:

@@ -84,8 +84,7 @@ def random_document(random: Random, ramified: bool = True) -> dict[str, Any]:
     monodromy = random.random() < 0.15
     places = random.sample(["0", "1", "-1/2", "sqrt(2)+i", "infinity", *POSITIONS], count)
     poles = [
-        {"at": place, "blocks": _blocks(random, rank, monodromy or random.random() < 0.5, ramified)}
-        for place in places
+        {"at": place, "blocks": _blocks(random, rank, monodromy or random.random() < 0.5, ramified)} for place in places
     ]
     document: dict[str, Any] = {
         "format": "polewright-problem/1",

@@ -39,9 +39,27 @@ def evaluated(conjugate: Conjugate) -> dict[Fraction, complex]:
     return {power: floating(value) * exp(2j * pi * float(turn)) for power, (value, turn) in conjugate}
 
 
-COEFFICIENTS = ["1", "-1", "2", "i", "-i", "sqrt(2)", "-sqrt(2)", "(1+i)/sqrt(2)", "(-1+i*sqrt(3))/2",
-                "(-1-i*sqrt(3))/2", "(sqrt(3)+i)/2", "a", "-a", "i*a", "a+b", "-a-b", "(-1+i*sqrt(3))/2*a",
-                "(sqrt(6)+sqrt(2)+i*(sqrt(6)-sqrt(2)))/4*b", "b"]
+COEFFICIENTS = [
+    "1",
+    "-1",
+    "2",
+    "i",
+    "-i",
+    "sqrt(2)",
+    "-sqrt(2)",
+    "(1+i)/sqrt(2)",
+    "(-1+i*sqrt(3))/2",
+    "(-1-i*sqrt(3))/2",
+    "(sqrt(3)+i)/2",
+    "a",
+    "-a",
+    "i*a",
+    "a+b",
+    "-a-b",
+    "(-1+i*sqrt(3))/2*a",
+    "(sqrt(6)+sqrt(2)+i*(sqrt(6)-sqrt(2)))/4*b",
+    "b",
+]
 
 
 def random_exponent(random: Random) -> Exponent:
@@ -84,8 +102,7 @@ def test_comparisons_agree_with_floating_evaluation() -> None:
         members = [(conjugate, random.randint(1, 3)) for r in (q, p) for conjugate in conjugates(r)]
         values = [evaluated(conjugate) for conjugate, _ in members]
         expected: dict[Fraction, int] = {}
-        for (first, (one, weight)), (second, (other, factor)) in product(
-                zip(values, members, strict=True), repeat=2):
+        for (first, (one, weight)), (second, (other, factor)) in product(zip(values, members, strict=True), repeat=2):
             slope = slope_between(first, second)
             assert (slope == 0) == (one == other)
             if slope:
@@ -123,8 +140,9 @@ DIFFERENT = [
 ]
 
 
-@pytest.mark.parametrize(("first", "second", "same"),
-                         [(*pair, True) for pair in SAME] + [(*pair, False) for pair in DIFFERENT])
+@pytest.mark.parametrize(
+    ("first", "second", "same"), [(*pair, True) for pair in SAME] + [(*pair, False) for pair in DIFFERENT]
+)
 def test_orbits_told_apart(first: dict[str, str], second: dict[str, str], same: bool) -> None:
     q, p = exponent(first), exponent(second)
     assert (not set(conjugates(q)).isdisjoint(conjugates(p))) == same

@@ -62,8 +62,8 @@ TOP_LEVEL: list[tuple[object, str, str]] = [
     (good(poles={}), "/poles", "an object"),
     (good(poles=[]), "/poles", "empty"),
     (make(*[log_pole(k, (0, [1])) for k in range(65)]), "/poles", "65 poles are given, over the limit of 64"),
-    (good(symbols=["a", "b", "a"]), "/symbols/2", 'listed twice, first at /symbols/0'),
-    (good(symbols=["a", "b", "é", "e\u0301"]), "/symbols/3", 'listed twice, first at /symbols/2'),
+    (good(symbols=["a", "b", "a"]), "/symbols/2", "listed twice, first at /symbols/0"),
+    (good(symbols=["a", "b", "é", "e\u0301"]), "/symbols/3", "listed twice, first at /symbols/2"),
     (good(symbols=["a", "b", "i"]), "/symbols/2", "reserved"),
     (good(symbols=["a", "b", "sqrt"]), "/symbols/2", "reserved"),
     (good(symbols=["a", "b", "infinity"]), "/symbols/2", "reserved"),
@@ -94,7 +94,7 @@ NUMBERS: list[tuple[object, str, str]] = [
     (None, "null", "written as a string"),
     ([1], "a list", "written as a string"),
     (0.5, "not exact", '"0.5"'),
-    (1e300, "not exact", 'write it as a string'),
+    (1e300, "not exact", "write it as a string"),
     (float("nan"), "not exact", "write it as a string"),
     (10**400, "more than 400 digits", "at most 400 digits"),
     ("", "no number here, at character 1", "exact number"),
@@ -232,19 +232,40 @@ TOGETHER: list[tuple[Data, str, str]] = [
     (make(pole(0, *monodromy(block({"1": 1}, (0, [1]))))), f"{B}/exponent", "the pole is irregular"),
     (make(pole(0, *monodromy(block({}, ("*", [1]))))), f"{B}/local_monodromy/0/value", "forces no value"),
     (make(pole(0, *monodromy(block({}, ("1/3", [1]), ("-5/3", [1]))))), f"{B}/local_monodromy/1/value", "modulo 1"),
-    (make(pole(0, *monodromy(block({}, ("a+1", [1]), ("a", [1])))), symbols=["a"]),
-     f"{B}/local_monodromy/1/value", "equal modulo 1 to"),
-    (make(pole(0, *monodromy(block({}, (0, [1])))), log_pole(1, (0, [1]))),
-     "/poles/1/blocks/0/residue", "the document begins with local_monodromy"),
-    (make(log_pole(1, (0, [1])), pole(0, *monodromy(block({}, (0, [1]))))),
-     "/poles/1/blocks/0/local_monodromy", "the document begins with residue"),
-    (make(pole(0, {**block({}, (0, [1])), "local_monodromy": [{"value": 0, "jordan": [1]}]})),
-     f"{B}/local_monodromy", "Both"),
-    (make(log_pole(0, ("+".join(f"sqrt({p})" for p in (2, 3, 5, 7)), [1]), ("sqrt(11)+sqrt(13)", [1])),
-          log_pole("sqrt(17)", (0, [2]))), "", "more than 6 independent square roots"),
+    (
+        make(pole(0, *monodromy(block({}, ("a+1", [1]), ("a", [1])))), symbols=["a"]),
+        f"{B}/local_monodromy/1/value",
+        "equal modulo 1 to",
+    ),
+    (
+        make(pole(0, *monodromy(block({}, (0, [1])))), log_pole(1, (0, [1]))),
+        "/poles/1/blocks/0/residue",
+        "the document begins with local_monodromy",
+    ),
+    (
+        make(log_pole(1, (0, [1])), pole(0, *monodromy(block({}, (0, [1]))))),
+        "/poles/1/blocks/0/local_monodromy",
+        "the document begins with residue",
+    ),
+    (
+        make(pole(0, {**block({}, (0, [1])), "local_monodromy": [{"value": 0, "jordan": [1]}]})),
+        f"{B}/local_monodromy",
+        "Both",
+    ),
+    (
+        make(
+            log_pole(0, ("+".join(f"sqrt({p})" for p in (2, 3, 5, 7)), [1]), ("sqrt(11)+sqrt(13)", [1])),
+            log_pole("sqrt(17)", (0, [2])),
+        ),
+        "",
+        "more than 6 independent square roots",
+    ),
     (make(*[log_pole(k, (f"1/{10**200 + k}", [1])) for k in range(3)]), "", "common denominator"),
-    (make(log_pole(0, (10**400 - 1, [1])), log_pole(1, (1, [1])), log_pole(2, ("*", [1]))),
-     "/poles/2/blocks/0/residue/0/value", "too large"),
+    (
+        make(log_pole(0, (10**400 - 1, [1])), log_pole(1, (1, [1])), log_pole(2, ("*", [1]))),
+        "/poles/2/blocks/0/residue/0/value",
+        "too large",
+    ),
 ]
 
 
@@ -262,7 +283,12 @@ def test_several_blocks_with_local_monodromy() -> None:
 
 def test_all_faults_come_together() -> None:
     data = {
-        "format": "x", "name": 1, "symbols": ["a", "a"], "extra": 0, "base": 9, "notes": "n" * 10_001,
+        "format": "x",
+        "name": 1,
+        "symbols": ["a", "a"],
+        "extra": 0,
+        "base": 9,
+        "notes": "n" * 10_001,
         "poles": [
             {"at": "0", "blocks": [block({"1": "b"}, ("2a", [0])), block({"x": 0.5}, ("a", [1]), ("a", [1]))]},
             {"at": "0", "blocks": [block({}, ("*", [1])), block({"1": 1}, ("*", [1])), block({"1": 1}, (1, [2]))]},
@@ -270,12 +296,26 @@ def test_all_faults_come_together() -> None:
         ],
     }
     places = [place.at for place in places_of(data)]
-    assert sorted(places) == sorted([
-        "/format", "/name", "/symbols/1", "/extra", "/base", "/notes",
-        "/poles/0/blocks/0/exponent/1", "/poles/0/blocks/0/residue/0/value", "/poles/0/blocks/0/residue/0/jordan/0",
-        "/poles/0/blocks/1/exponent/x", "/poles/0/blocks/1/exponent/x", "/poles/0/blocks/1/residue/1/value",
-        "/poles/1/at", "/poles/1/blocks/1/residue/0/value", "/poles/1/blocks/2/exponent", "/poles/2",
-    ])
+    assert sorted(places) == sorted(
+        [
+            "/format",
+            "/name",
+            "/symbols/1",
+            "/extra",
+            "/base",
+            "/notes",
+            "/poles/0/blocks/0/exponent/1",
+            "/poles/0/blocks/0/residue/0/value",
+            "/poles/0/blocks/0/residue/0/jordan/0",
+            "/poles/0/blocks/1/exponent/x",
+            "/poles/0/blocks/1/exponent/x",
+            "/poles/0/blocks/1/residue/1/value",
+            "/poles/1/at",
+            "/poles/1/blocks/1/residue/0/value",
+            "/poles/1/blocks/2/exponent",
+            "/poles/2",
+        ]
+    )
 
 
 def test_the_message_counts_the_faults() -> None:
@@ -332,6 +372,7 @@ def test_faults_of_the_text_are_reported_with_the_others() -> None:
     with pytest.raises(Refused) as caught:
         problem_from_json(data, faults)
     assert [place.message for place in caught.value.places][:2] == [
-        'The key "format" stands more than once', "The key name is missing",
+        'The key "format" stands more than once',
+        "The key name is missing",
     ]
     assert len(caught.value.places) == 5

@@ -58,7 +58,7 @@ def test_integers_of_too_many_digits() -> None:
 
 
 def test_floats_remember_how_they_were_written() -> None:
-    data = parse_json('[0.10, 1e999, -2E-3, 0.' + "1" * 1000 + "]")
+    data = parse_json("[0.10, 1e999, -2E-3, 0." + "1" * 1000 + "]")
     assert isinstance(data, list)
     assert [x.literal for x in data if isinstance(x, WrittenFloat)][:3] == ["0.10", "1e999", "-2E-3"]
     assert all(isinstance(x, float) for x in data)
@@ -79,20 +79,23 @@ def test_surrogate_pairs_are_characters() -> None:
     assert parse_json('["\\ud83d\\ude00"]') == ["\U0001f600"]
 
 
-@pytest.mark.parametrize(("text", "message"), [
-    ("", "line 1, column 1"),
-    ("{\n  'a': 1}", "line 2, column 3"),
-    ('{"a": 1,}', "not JSON"),
-    ("[1 2]", "line 1, column 4"),
-    ('{"a": 01}', "not JSON"),
-    ("[+1]", "not JSON"),
-    ("[.5]", "not JSON"),
-    ('"a\nb"', "control character"),
-    ("{} {}", "extra data"),
-    (b"\xff\xfe", "byte 1 cannot be read"),
-    (b'{"a": "\xed\xa0\x80"}', "not UTF-8"),
-    ('{"a": 1}'.encode("utf-16"), "not UTF-8"),
-])
+@pytest.mark.parametrize(
+    ("text", "message"),
+    [
+        ("", "line 1, column 1"),
+        ("{\n  'a': 1}", "line 2, column 3"),
+        ('{"a": 1,}', "not JSON"),
+        ("[1 2]", "line 1, column 4"),
+        ('{"a": 01}', "not JSON"),
+        ("[+1]", "not JSON"),
+        ("[.5]", "not JSON"),
+        ('"a\nb"', "control character"),
+        ("{} {}", "extra data"),
+        (b"\xff\xfe", "byte 1 cannot be read"),
+        (b'{"a": "\xed\xa0\x80"}', "not UTF-8"),
+        ('{"a": 1}'.encode("utf-16"), "not UTF-8"),
+    ],
+)
 def test_malformed(text: str | bytes, message: str) -> None:
     with pytest.raises(Malformed) as caught:
         parse_json(text)
@@ -123,7 +126,10 @@ def test_faults_of_the_text_and_of_the_document_come_together() -> None:
     with pytest.raises(Refused) as caught:
         read_document(text.replace('"name": "an', '"name": "\\ud800'))
     assert [place.at for place in caught.value.places] == [
-        "/name", "/poles/0/blocks/0/residue/0/value", "/poles/1/at", "/poles/1/x",
+        "/name",
+        "/poles/0/blocks/0/residue/0/value",
+        "/poles/1/at",
+        "/poles/1/x",
     ]
 
 

@@ -70,8 +70,9 @@ def test_a_scalar_twist_changes_nothing(problem: Problem) -> None:
 
     term = (Fraction(7), Value.rational(5))
     poles = tuple(
-        replace(p, blocks=tuple(replace(b, exponent=replace(b.exponent, terms=(term, *b.exponent.terms)))
-                                for b in p.blocks))
+        replace(
+            p, blocks=tuple(replace(b, exponent=replace(b.exponent, terms=(term, *b.exponent.terms))) for b in p.blocks)
+        )
         for p in problem.poles
     )
     twisted = replace(problem, poles=poles)
@@ -98,14 +99,34 @@ def test_classes_of_one_log_pole() -> None:
 # dimension 2 in rank 2 belong to Painlevé VI, V, III(D6), IV, II (Jimbo and Miwa, Physica D 2 (1981)).
 # Boalch, Publ. IHES 116 (2012): connections with one pole of order 3, here with core A3 and A2.
 TYPES = [
-    ("11,11,11", 0), ("21,111,111", 0), ("31,1^4,1^4", 0), ("41,1^5,1^5", 0), ("211,22,1^4", 0),
+    ("11,11,11", 0),
+    ("21,111,111", 0),
+    ("31,1^4,1^4", 0),
+    ("41,1^5,1^5", 0),
+    ("211,22,1^4", 0),
     ("21,21,21,21", 0),
-    ("11,11,11,11", 2), ("111,111,111", 2), ("1111,1111,22", 2), ("111111,222,33", 2),
-    ("(1)(1),11,11", 2), ("(1)(1),(1)(1)", 2), ("((1))((1)),11", 2), ("(((1)))(((1)))", 2),
-    ("((1)(1))((1)(1))", 2), ("((1))((1))((1))", 2), ("(1)(1)(1),111", 2),
-    ("11,11,11,11,11", 4), ("21,21,111,111", 4), ("31,22,22,1111", 4), ("22,22,22,211", 4),
-    ("(1)(1),11", 0), ("((1))((1))", 0), ("(1)(1)(1),21", 0), ("(11)(1),111", 0),
-    ("22,22,22,22", 2), ("11,11", -2), ("1", 0),
+    ("11,11,11,11", 2),
+    ("111,111,111", 2),
+    ("1111,1111,22", 2),
+    ("111111,222,33", 2),
+    ("(1)(1),11,11", 2),
+    ("(1)(1),(1)(1)", 2),
+    ("((1))((1)),11", 2),
+    ("(((1)))(((1)))", 2),
+    ("((1)(1))((1)(1))", 2),
+    ("((1))((1))((1))", 2),
+    ("(1)(1)(1),111", 2),
+    ("11,11,11,11,11", 4),
+    ("21,21,111,111", 4),
+    ("31,22,22,1111", 4),
+    ("22,22,22,211", 4),
+    ("(1)(1),11", 0),
+    ("((1))((1))", 0),
+    ("(1)(1)(1),21", 0),
+    ("(11)(1),111", 0),
+    ("22,22,22,22", 2),
+    ("11,11", -2),
+    ("1", 0),
 ]
 
 
@@ -123,8 +144,10 @@ def ramified(*parts: tuple[object, list[dict[str, object]]]) -> Problem:
     """A problem of rank 2 with distinct eigenvalues: exponents of every block, by pole."""
     poles = []
     for at, exponents in parts:
-        blocks = [block(dict(q), *[(f"{k}/{7 + len(poles)}", [1]) for k in range(2)] if q == {} else [(0, [1])])
-                  for q in exponents]
+        blocks = [
+            block(dict(q), *[(f"{k}/{7 + len(poles)}", [1]) for k in range(2)] if q == {} else [(0, [1])])
+            for q in exponents
+        ]
         poles.append(pole(at, *blocks))
     return problem_from_json(make(*poles))
 
@@ -168,18 +191,14 @@ def test_generalised_airy_equations_are_rigid(n: int) -> None:
 def test_frenkel_gross_type_connections_are_rigid(n: int) -> None:
     # Slope 1/n at infinity, one unipotent block at 0: the Kloosterman connection (Katz 1996; Arinkin 2010 treats
     # rigid irregular connections in general).
-    problem = problem_from_json(
-        make(log_pole("0", (0, [n])), pole("infinity", block({f"1/{n}": n}, ("*", [1]))))
-    )
+    problem = problem_from_json(make(log_pole("0", (0, [n])), pole("infinity", block({f"1/{n}": n}, ("*", [1])))))
     assert irregularity_of_endomorphisms(problem.poles[1]) == n - 1
     assert rigidity_index(problem) == 2
 
 
 def test_conjugates_of_one_block_against_another() -> None:
     # z^(−1/2) and z^(−1/2) + z^(−1/4): of the 6·5 ordered pairs 18 differ at 1/2 or earlier, counted by hand.
-    problem = problem_from_json(
-        make(pole(0, block({"1/2": 1}, (0, [1])), block({"1/2": 1, "1/4": 1}, (0, [1]))))
-    )
+    problem = problem_from_json(make(pole(0, block({"1/2": 1}, (0, [1])), block({"1/2": 1, "1/4": 1}, (0, [1])))))
     # Coefficients at 1/2: +, − in the first block; +, −, +, − in the second: 2·3·3 pairs differ there.
     # At 1/4 the three with equal sign are 0, w, −w (w of them): 3·2 pairs, twice.
     assert irregularity_of_endomorphisms(problem.poles[0]) == 18 * Fraction(1, 2) + 12 * Fraction(1, 4)
