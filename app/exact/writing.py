@@ -7,6 +7,7 @@ then i, then i*sqrt(2), i*sqrt(3), ….  Within a term: coefficient, i, square r
 
 from collections.abc import Mapping, Sequence
 from fractions import Fraction
+from functools import cached_property
 from operator import itemgetter
 
 from app.exact.limits import MAX_RADICAND
@@ -14,6 +15,15 @@ from app.exact.square_root import factors
 from app.exact.value import Key, Monomial, Rational, Value
 
 SymbolRank = tuple[int, str]
+
+
+class SymbolOrder(tuple[str, ...]):
+    """Symbols in listed order, with their places at hand; worth making where many numbers are written in one order."""
+
+    @cached_property
+    def places(self) -> dict[str, SymbolRank]:
+        """Rank of every listed symbol."""
+        return {name: (place, "") for place, name in enumerate(self)}
 
 
 def write_number(value: Value, symbols: Sequence[str] = ()) -> str:
@@ -31,9 +41,12 @@ def readable_text(value: Value) -> str:
 
 def ordered_terms(value: Value, symbols: Sequence[str] = ()) -> list[tuple[Key, Rational]]:
     """The terms in canonical order, every monomial with its symbols in listed order."""
-    rank: dict[str, SymbolRank] = {name: (len(symbols), name) for name in value.symbols()}
-    if len(rank) > 1:
-        rank.update((name, (place, "")) for place, name in enumerate(symbols) if name in rank)
+    used = value.symbols()
+    if len(used) > 1:
+        places = (symbols if isinstance(symbols, SymbolOrder) else SymbolOrder(symbols)).places
+        rank: dict[str, SymbolRank] = {name: places.get(name, (len(symbols), name)) for name in used}
+    else:
+        rank = dict.fromkeys(used, (0, ""))
     keyed: list[tuple[tuple[object, ...], tuple[Key, Rational]]] = []
     for (monomial, radical), coefficient in value.terms.items():
         ordered = tuple(sorted(monomial, key=lambda pair: rank[pair[0]]))

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from app import PROGRAM
 from app.exact.number import write_number
 from app.exact.value import Value
+from app.exact.writing import SymbolOrder
 from app.existence.verdict import (
     Certificate,
     Decomposition,
@@ -36,10 +37,14 @@ Write = Callable[[Value], str]
 
 def findings_json(findings: Findings) -> FindingsJson:
     """The findings as JSON data.  Cost: linear in what is written."""
-    symbols = findings.problem.symbols
+    symbols = SymbolOrder(findings.problem.symbols)
+    written: dict[Value, str] = {}
 
     def write(value: Value) -> str:
-        return write_number(value, symbols)
+        # the two verdicts often speak of one quiver, whose parameters need not be written twice
+        if value not in written:
+            written[value] = write_number(value, symbols)
+        return written[value]
 
     quiver = findings.quiver
     solved = findings.solved
