@@ -127,16 +127,16 @@ def _examine(given: argparse.Namespace) -> int:
 
 def _examine_whole(whole: bytes, *, as_json: bool) -> int:
     """One document, or JSON Lines when the whole is no JSON but a line of it is an object."""
-    from app.local.document import parse_json, problem_from_json
+    from app.local.document import read_document
 
     try:
-        data = parse_json(whole)
+        problem = read_document(whole)
     except (Malformed, TooLarge):
         lines = [line for line in whole.splitlines(keepends=True) if line.strip()]
         if len(lines) > 1 and any(_is_object(line) for line in lines):
             return _print_lines(iter(lines))
         raise
-    return _print_one(problem_from_json(data), as_json=as_json)
+    return _print_one(problem, as_json=as_json)
 
 
 def _print_one(problem: "Problem", *, as_json: bool) -> int:
