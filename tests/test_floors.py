@@ -15,6 +15,7 @@ FLOORS = {
     "connection": 5,
     "findings": 7,
     "drawing": 7,
+    "jobs": 8,
     "desk": 9,
     "web": 10,
     "__main__": 11,

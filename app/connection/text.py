@@ -57,3 +57,15 @@ def _table(matrix: Rows, symbols: Sequence[str]) -> list[str]:
     return [
         "[ " + "  ".join(text.rjust(width) for text, width in zip(row, widths, strict=True)) + " ]" for row in texts
     ]
+
+
+def construction_record(construction: Construction) -> dict[str, Any]:
+    """The whole construction for a page: how it came about, and the connection's document (None if there is none)."""
+    connection = construction.connection
+    return {
+        "method": construction.method,
+        "note": construction.note,
+        "exists": construction.exists,
+        "verified": construction.verified,
+        "connection": None if connection is None else dict(connection_document(connection)),
+    }
