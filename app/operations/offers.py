@@ -152,7 +152,7 @@ def _list_first(problem: Problem, vertex: Vertex) -> Result:
 
 
 def _normalise(problem: Problem, vertex: Vertex) -> Result:
-    """Twist exponent and first eigenvalue of the block away; the base pole, or the first other one, takes the residue."""
+    """Twist exponent and first eigenvalue away; the base pole, or the first other one, takes the residue."""
     block = problem.poles[vertex.pole].blocks[vertex.block]
     base = quiver_of(problem).base
     other = base if base != vertex.pole else next((k for k in range(len(problem.poles)) if k != vertex.pole), None)
