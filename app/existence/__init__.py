@@ -7,6 +7,10 @@ and drawings.
     decide.py         the decision for a quiver with parameters
     fundamental.py    what can still forbid existence in the fundamental set
     enumeration.py    all decompositions of a small vector
+    ramified.py       the decision for ramified data
+    ramified_certificates.py  their certificates, as frozen values
+    residue_sum.py    principal parts whose residues have a sum with small eigenspaces
     problems.py       additive and multiplicative verdicts of a problem
     check.py          certificates checked by code that shares nothing with the decision
+    check_ramified.py the same for ramified data
 """

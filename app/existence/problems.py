@@ -8,12 +8,11 @@ side by side.
 
 from dataclasses import replace
 
-from app.exact.number import write_number
 from app.exact.value import Value, modulo_one
 from app.existence.decide import decide
-from app.existence.verdict import FuchsDefect, NotARoot, Verdict
+from app.existence.ramified import ramified_verdict
+from app.existence.verdict import Verdict
 from app.local.formal_type import Block, Eigenvalue, Pole
-from app.local.orbit import rigidity_index
 from app.local.problem import Problem
 from app.roots.build import quiver_of
 from app.roots.quiver import Quiver
@@ -28,7 +27,7 @@ def additive_verdict(problem: Problem, quiver: Quiver | None, reduction: Reducti
     if problem.reading == "local_monodromy":
         return None
     if quiver is None or reduction is None:
-        return _ramified_verdict(problem)
+        return ramified_verdict(problem)
     return decide(quiver, reduction)
 
 
@@ -66,23 +65,3 @@ def _merged(block: Block) -> Block:
         else:
             classes[key] = eigenvalue
     return Block(block.exponent, tuple(classes.values()))
-
-
-def _ramified_verdict(problem: Problem) -> Verdict:
-    """For ramified data: what the Fuchs relation and the rigidity index refute, and "open" otherwise."""
-    defect = problem.trace_sum
-    if not defect.is_zero:
-        reason = (
-            f"The traces of the residues sum to {write_number(defect)} instead of 0 (Fuchs relation), "
-            "so no system exists."
-        )
-        return Verdict(False, "refuted", reason, FuchsDefect(defect), None)
-    index = rigidity_index(problem)
-    if index > 2:
-        reason = (
-            f"The rigidity index is {index}, larger than 2, so the expected dimension {2 - index} is negative and no "
-            "irreducible system exists."
-        )
-        return Verdict(False, "refuted", reason, NotARoot((), (), "negative p"), None)
-    reason = "Existence is not decided for ramified data by any theorem that the program knows."
-    return Verdict(None, "open", reason, None, None)

@@ -7,6 +7,8 @@ A certificate is what a reader needs to check the verdict without this program:
     NotARoot        reflections that lead to a vector that no root can become
     FuchsDefect     the non-zero sum of the traces
 
+Those of ramified data are in ``ramified_certificates.py``.
+
 A step of a certificate is a vertex id (one reflection), several core ids (the reflection at their sum ε), or several
 ids of one leg (reflections one after another: a reordering of eigenvalues).
 """
@@ -15,6 +17,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from app.exact.value import Value
+from app.existence.ramified_certificates import RamifiedCertificate
 from app.roots.quiver import Quiver, Vector
 
 Status = Literal["proved", "refuted", "criterion", "evidence", "open"]
@@ -82,7 +85,8 @@ class Verdict:
     """Whether an irreducible system (or irreducible monodromy) exists, how sure that is, and why.
 
     ``exists`` is None when nothing is decided.  ``quiver`` is the one that the certificate speaks of, None for
-    ramified data.  ``modulo_integers`` marks the multiplicative problem.
+    ramified data.  ``modulo_integers`` marks the multiplicative problem.  ``ramified`` is a certificate that speaks of
+    the problem's own ramified poles instead of a quiver.
     """
 
     exists: bool | None
@@ -91,3 +95,4 @@ class Verdict:
     certificate: Certificate | None
     quiver: Quiver | None
     modulo_integers: bool = False
+    ramified: RamifiedCertificate | None = None
