@@ -5,6 +5,7 @@ import random
 import pytest
 
 from app.errors import Refused
+from app.existence.problems import local_monodromy_problem
 from app.local.shorthand import problem_from_shorthand
 from app.operations.offers import MOST_EPSILONS, all_operations, carry_out
 from app.roots.build import quiver_of
@@ -68,3 +69,10 @@ def test_refusals() -> None:
     with pytest.raises(Refused) as refused:
         all_operations(problem, "0.9")
     assert "no vertex" in refused.value.message
+
+
+def test_local_monodromies_have_offers_too() -> None:
+    problem = local_monodromy_problem(problem_from_shorthand("21,111,111"))
+    offers = {offer.key: offer for offer in all_operations(problem, "0.0")}
+    assert offers["reflect"].holds and offers["normalise"].holds
+    assert not offers["reading"].holds and "residues" in offers["reading"].words

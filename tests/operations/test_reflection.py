@@ -1,6 +1,7 @@
 """Reflections of problems: exactly (s_ε α, r_ε λ) of the quiver, with invariants kept and the way back."""
 
 import random
+from dataclasses import replace
 from fractions import Fraction
 from itertools import product
 
@@ -196,3 +197,20 @@ def test_ramified_data_are_refused() -> None:
     with pytest.raises(Refused) as refused:
         reflect(problem, ["0.0"])
     assert "unramified" in refused.value.message
+
+
+def test_convolution_of_rank_one_residues() -> None:
+    """mc_μ of residues a, b, c of rank one: (a + μ, 0, 0), …, and −μ, −μ, −(a + b + c + μ) at infinity.
+
+    Source: Dettweiler and Reiter, J. Algebra 318 (2007); the matrices have one non-zero row each.
+    """
+    numbers = [Value.rational(n) for n in (2, 3, 5)]
+    start = log_problem([["2"], ["3"], ["5"], ["-10"]])
+    mu = Value.rational(Fraction(1, 7))
+    infinity = 3
+    zero = Choice(Exponent(), Value.rational(0))
+    result = reflect_at(replace(start, base=infinity), (zero, zero, zero, Choice(Exponent(), mu)))
+    assert result.parameter == -mu and result.problem.rank == 3
+    classes = [{(e.value, e.multiplicity) for e in pole.blocks[0].residue} for pole in result.problem.poles]
+    assert classes[:3] == [{(number + mu, 1), (Value.rational(0), 2)} for number in numbers]
+    assert classes[3] == {(-mu, 2), (-mu - 10, 1)}
