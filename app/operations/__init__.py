@@ -14,4 +14,5 @@ convolutions, and carries out operations on local data, each a pure function tha
     readings.py     several connections that share one quiver
     offers.py       the operations offered at a vertex, with their conditions
     descent.py      the core moves of a reduction as steps of a descent
+    playing.py      each step of a descent as a problem of its own
 """
