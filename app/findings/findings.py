@@ -10,12 +10,14 @@ from app.exact.value import Value, modulo_one
 from app.existence.problems import additive_verdict, multiplicative_verdict
 from app.existence.verdict import Verdict
 from app.findings.families import Family, families
+from app.local.newton import irregularity, newton_polygon, slopes
 from app.local.orbit import largest_slope, moduli_dimension, orbit_dimension, rigidity_index
 from app.local.problem import Problem
 from app.operations.descent import DescentStep, descent
 from app.roots.build import quiver_of
 from app.roots.dynkin import type_name
 from app.roots.form import p_of, support
+from app.roots.orbit_diagram import OrbitDiagram, orbit_diagram
 from app.roots.positive import RootClass, root_class
 from app.roots.quiver import Quiver
 from app.roots.reduction import Reduction, reduce
@@ -39,6 +41,16 @@ class OrbitFigure:
 
 
 @dataclass(frozen=True)
+class FormalFigure:
+    """Irregularity, slopes with multiplicities and Newton polygon of the formal type at a pole."""
+
+    pole: int
+    irregularity: int
+    slopes: tuple[tuple[Fraction, int], ...]
+    newton_polygon: tuple[tuple[int, int], ...]
+
+
+@dataclass(frozen=True)
 class Resonance:
     """Two eigenvalues of one block that differ by a non-zero integer: second − first = difference > 0."""
 
@@ -53,7 +65,8 @@ class Resonance:
 class Findings:
     """Everything that the program says about a problem.
 
-    ``quiver``, ``support_type``, ``root_class`` and ``p`` are None for ramified data.  ``additive`` is None where local
+    ``quiver``, ``support_type``, ``root_class`` and ``p`` are None for ramified data, which have ``diagram``; it is
+    None for all others.  ``additive`` is None where local
     monodromies are given, ``multiplicative`` where a pole is irregular.
     """
 
@@ -64,7 +77,9 @@ class Findings:
     fuchs_defect: Value
     solved: Solved | None
     orbits: tuple[OrbitFigure, ...]
+    formal: tuple[FormalFigure, ...]
     quiver: Quiver | None
+    diagram: OrbitDiagram | None
     support_type: str | None
     root_class: RootClass | None
     p: int | None
@@ -120,7 +135,12 @@ def examine(problem: Problem) -> Findings:
         orbits=tuple(
             OrbitFigure(i, orbit_dimension(pole), largest_slope(pole)) for i, pole in enumerate(problem.poles)
         ),
+        formal=tuple(
+            FormalFigure(i, irregularity(pole), slopes(pole), newton_polygon(pole))
+            for i, pole in enumerate(problem.poles)
+        ),
         quiver=quiver,
+        diagram=orbit_diagram(problem) if problem.ramified else None,
         support_type=None if quiver is None else type_name(quiver, support(quiver.dimension)),
         root_class=None if quiver is None or reduction is None else _class_of(quiver, reduction),
         p=None if quiver is None else p_of(quiver, quiver.dimension),

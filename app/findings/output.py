@@ -19,6 +19,7 @@ from app.existence.verdict import (
     Verdict,
 )
 from app.findings.findings import Findings
+from app.findings.ramified_json import diagram_json, ramified_certificate_json
 from app.roots.quiver import Quiver
 
 if TYPE_CHECKING:
@@ -57,7 +58,17 @@ def findings_json(findings: Findings) -> FindingsJson:
         "fuchs": {"holds": findings.fuchs_holds, "defect": write(findings.fuchs_defect)},
         "solved": None if solved is None else {"at": solved.at, "value": write(solved.value)},
         "orbits": [{"pole": o.pole, "dimension": o.dimension, "slope": str(o.slope)} for o in findings.orbits],
+        "formal": [
+            {
+                "pole": figure.pole,
+                "irregularity": figure.irregularity,
+                "slopes": [(str(slope), width) for slope, width in figure.slopes],
+                "newton_polygon": list(figure.newton_polygon),
+            }
+            for figure in findings.formal
+        ],
         "quiver": None if quiver is None else _quiver(quiver, findings.support_type or "", write),
+        "diagram": None if findings.diagram is None else diagram_json(findings.diagram),
         "root": _root(findings),
         "additive": _verdict(findings.additive, write),
         "multiplicative": _verdict(findings.multiplicative, write),
@@ -119,6 +130,8 @@ def _verdict(verdict: Verdict | None, write: Write) -> VerdictJson | None:
     if certificate is not None and verdict.modulo_integers and verdict.quiver is not None:
         certificate["vertices"] = _vertices(verdict.quiver, write)
         certificate["edges"] = _edges(verdict.quiver)
+    if verdict.ramified is not None:
+        certificate = ramified_certificate_json(verdict.ramified)
     return {
         "exists": verdict.exists,
         "status": verdict.status,

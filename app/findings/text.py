@@ -7,6 +7,7 @@ from app.exact.value import Value
 from app.existence.verdict import Verdict
 from app.findings.findings import Findings
 from app.local.problem import Problem
+from app.roots.orbit_diagram import OrbitDiagram
 
 _STATUS_WORDS = {
     "proved": "proved",
@@ -42,8 +43,11 @@ def _lines(findings: Findings) -> Iterator[str]:
     if findings.quiver is not None:
         yield f"  quiver            {findings.support_type}, base pole {findings.quiver.base + 1}"
         yield f"  root              {findings.root_class}, p = {findings.p}"
+    if findings.diagram is not None:
+        yield from _diagram_lines(findings.diagram)
     for orbit in findings.orbits:
         yield f"  orbit at pole {orbit.pole + 1:<3} dimension {orbit.dimension}, slope {orbit.slope}"
+    yield from _formal_lines(findings)
     if findings.solved is not None:
         yield f"  forced value      {write(findings.solved.value)}   ({findings.solved.at})"
     for resonance in findings.resonances:
@@ -61,6 +65,30 @@ def _lines(findings: Findings) -> Iterator[str]:
         yield "Descent"
         for number, step in enumerate(findings.descent, start=1):
             yield f"  {number}. {step.operation}"
+
+
+def _formal_lines(findings: Findings) -> Iterator[str]:
+    """Slopes and Newton polygon of every irregular pole."""
+    for figure in findings.formal:
+        if figure.irregularity:
+            slopes = ", ".join(f"{slope} ({width} times)" for slope, width in figure.slopes)
+            polygon = ", ".join(f"({across}, {height})" for across, height in figure.newton_polygon)
+            yield f"  slopes at pole {figure.pole + 1:<2} {slopes}; irregularity {figure.irregularity}"
+            yield f"  Newton polygon    {polygon}"
+
+
+def _diagram_lines(diagram: OrbitDiagram) -> Iterator[str]:
+    """The diagram of ramified data: vertices with dimension and weight, edges and loops with their signs."""
+    ids = [vertex.id for vertex in diagram.vertices]
+    vertices = ", ".join(
+        f"{vertex.id}: {vertex.dimension}" + (f" of weight {vertex.weight}" if vertex.weight > 1 else "")
+        for vertex in diagram.vertices
+    )
+    yield f"  diagram           {vertices}; base pole {diagram.base + 1}"
+    if diagram.edges:
+        yield "  edges             " + ", ".join(f"{ids[i]} – {ids[j]}: {count}" for i, j, count in diagram.edges)
+    if diagram.loops:
+        yield "  loops             " + ", ".join(f"{ids[i]}: {count}" for i, count in diagram.loops)
 
 
 def _verdict_lines(subject: str, verdict: Verdict) -> Iterator[str]:

@@ -31,6 +31,15 @@ class OrbitJson(TypedDict):
     slope: str
 
 
+class FormalJson(TypedDict):
+    """Figures of the formal type at a pole: slopes with multiplicities, vertices of the Newton polygon."""
+
+    pole: int
+    irregularity: int
+    slopes: list[tuple[str, int]]
+    newton_polygon: list[tuple[int, int]]
+
+
 class VertexJson(TypedDict):
     """A vertex of the quiver; ``leg`` is the place along its leg and stands at leg vertices only."""
 
@@ -52,6 +61,30 @@ class QuiverJson(TypedDict):
     edges: list[tuple[str, str, int]]
 
 
+class OrbitVertexJson(TypedDict):
+    """A vertex of the diagram of ramified data; ``weight`` is the ramification index of a core vertex, 1 on legs."""
+
+    id: str
+    role: Literal["core", "leg"]
+    pole: int
+    block: int
+    leg: NotRequired[int]
+    dimension: int
+    weight: int
+
+
+class DiagramJson(TypedDict):
+    """The diagram of ramified data: vertices, and the non-zero entries C_ij, i ≤ j, of its symmetric matrix.
+
+    −C_ij is the number of edges (negative for C_ij > 0), (2 − C_ii)/2 that of loops; an entry C_ii that is not listed
+    is 0.
+    """
+
+    base: int
+    vertices: list[OrbitVertexJson]
+    entries: list[tuple[str, str, int]]
+
+
 # written as a call because "class" is a keyword: class of α as a root, and p(α) = 1 − q(α)
 RootJson = TypedDict("RootJson", {"class": Literal["real", "isotropic", "anisotropic", "none"], "p": int})
 
@@ -64,10 +97,27 @@ class PartJson(TypedDict):
     p: int
 
 
-class CertificateJson(TypedDict):
-    """A certificate; which entries stand depends on its kind."""
+class GaugeJson(TypedDict):
+    """A gauge Σ terms[k]·z^k at a pole."""
 
-    kind: Literal["reflections", "decomposition", "not-a-root", "fuchs"]
+    pole: int
+    terms: list[list[list[int]]]
+
+
+class CertificateJson(TypedDict):
+    """A certificate; which entries stand depends on its kind.  Those from ``pole`` on belong to ramified data."""
+
+    kind: Literal[
+        "reflections",
+        "decomposition",
+        "not-a-root",
+        "fuchs",
+        "rigidity-excess",
+        "jordan-blocks",
+        "free-residue",
+        "residue-sum",
+        "large-eigenspace",
+    ]
     vertices: NotRequired[list[VertexJson]]
     edges: NotRequired[list[tuple[str, str, int]]]
     steps: NotRequired[list[str | list[str]]]
@@ -76,6 +126,16 @@ class CertificateJson(TypedDict):
     criterion: NotRequired[str]
     failure: NotRequired[str]
     defect: NotRequired[str]
+    pole: NotRequired[int]
+    slope: NotRequired[str]
+    other: NotRequired[int | None]
+    counts: NotRequired[list[int]]
+    second: NotRequired[int | None]
+    gauges: NotRequired[list[GaugeJson]]
+    columns: NotRequired[list[list[int]]]
+    choices: NotRequired[list[list[int]]]
+    dimension: NotRequired[int]
+    index: NotRequired[int]
 
 
 class VerdictJson(TypedDict):
@@ -124,7 +184,9 @@ class FindingsJson(TypedDict):
     fuchs: FuchsJson
     solved: SolvedJson | None
     orbits: list[OrbitJson]
+    formal: list[FormalJson]
     quiver: QuiverJson | None
+    diagram: DiagramJson | None
     root: RootJson | None
     additive: VerdictJson | None
     multiplicative: VerdictJson | None
