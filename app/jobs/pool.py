@@ -36,10 +36,14 @@ Report = tuple[str, str, float | None]
 
 @dataclass(frozen=True)
 class Job:
-    """One job: what, state, progress in words and as a part of 1, result as JSON text, or why there is none."""
+    """One job: what, with which input, state, progress in words and as a part of 1, result or why there is none.
+
+    ``given`` and ``result`` are JSON texts.
+    """
 
     id: str
     task: str
+    given: str
     state: State
     begun: float
     limit: float
@@ -74,7 +78,7 @@ class Jobs:
             if sum(not job.ended for job in self._jobs.values()) >= LONGEST_QUEUE:
                 raise Busy("Many computations are waiting already; try again when some have ended.")
             pool = self._started()
-            job = Job(secrets.token_hex(8), task, "waiting", time.time(), limit)
+            job = Job(secrets.token_hex(8), task, text, "waiting", time.time(), limit)
             self._jobs[job.id] = job
             while len(self._jobs) > KEPT:
                 oldest = next(iter(self._jobs))

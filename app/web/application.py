@@ -13,7 +13,8 @@ from starlette.staticfiles import StaticFiles
 from app import VERSION
 from app.desk.store import Store
 from app.errors import PolewrightError
-from app.web import api, pages
+from app.jobs.pool import Jobs
+from app.web import api, connections, fonts, jobs_api, operating, pages
 from app.web.demos import Demos
 from app.web.guard import Guard
 from app.web.refusals import on_framework_error, on_refusal, on_validation_error
@@ -40,10 +41,12 @@ def create_application(settings: Settings) -> FastAPI:
     """
     demos = Demos(settings.demos)
     store = Store(settings.data / DESK_FILE, demos.first)
+    jobs = Jobs()
 
     @asynccontextmanager
     async def lifespan(_: FastAPI) -> AsyncIterator[None]:
         yield
+        jobs.close()
         store.close()
 
     application = FastAPI(
@@ -63,8 +66,11 @@ def create_application(settings: Settings) -> FastAPI:
     application.state.demos = demos
     application.state.store = store
     application.state.work = Work()
+    application.state.jobs = jobs
     application.include_router(api.router)
-    application.include_router(pages.router, include_in_schema=False)
+    application.include_router(jobs_api.router)
+    for shown in (pages, connections, operating, fonts):
+        application.include_router(shown.router, include_in_schema=False)
     application.mount("/static", StaticFiles(directory=STATIC, check_dir=False), name="static")
     application.add_middleware(Guard, port=settings.port)
     return application

@@ -20,6 +20,7 @@ from app.existence.verdict import Decomposition, FuchsDefect, NotARoot, Reflecti
 from app.findings.findings import Findings
 from app.local.formal_type import Block
 from app.local.problem import Problem
+from app.local.writer import canonical_text
 from app.roots.form import p_of
 from app.roots.quiver import Quiver, Vector, Vertex
 from app.web.demos import Demo
@@ -28,6 +29,7 @@ from app.web.mathematics import exponent_mathml, type_mathml, value_mathml
 LIST_SHOWN = 8
 STEPS_SHOWN = 8
 STEPS_LISTED = 40
+DOCUMENT_CARRIED = 12_000
 
 STATUS_WORDS = {
     "proved": "proved",
@@ -102,11 +104,15 @@ class VertexContext:
 
 @dataclass(frozen=True)
 class DiagramContext:
-    """The diagram as markup, and its vertices; ``picture`` is None where there is no quiver."""
+    """The diagram as markup, and its vertices; ``picture`` is None where there is no quiver.
+
+    ``document`` goes with the buttons that lead to other pages; it is "" for problems too large for those.
+    """
 
     picture: Markup | None
     vertices: tuple[VertexContext, ...]
     type: Markup
+    document: str
 
 
 @dataclass(frozen=True)
@@ -293,7 +299,7 @@ def diagram_context(findings: Findings, selected: str | None = None) -> DiagramC
     """The diagram and its vertices.  Cost: linear in what is drawn and listed."""
     quiver = findings.quiver
     if quiver is None:
-        return DiagramContext(None, (), Markup(""))
+        return DiagramContext(None, (), Markup(""), "")
     symbols = findings.problem.symbols
     title = f"Quiver of type {findings.support_type}"
     description = (
@@ -305,7 +311,11 @@ def diagram_context(findings: Findings, selected: str | None = None) -> DiagramC
         return f'<a href="#vertex-{vertex_id}" class="vertex-link">{markup}</a>'
 
     picture = Markup(svg(place(quiver), title=title, description=description, selected=selected, wrap=link))
-    return DiagramContext(picture, tuple(_vertices(quiver, symbols)), type_mathml(findings.support_type or ""))
+    document = canonical_text(findings.problem)
+    if len(document) > DOCUMENT_CARRIED:
+        document = ""
+    vertices = tuple(_vertices(quiver, symbols))
+    return DiagramContext(picture, vertices, type_mathml(findings.support_type or ""), document)
 
 
 def _vertices(quiver: Quiver, symbols: tuple[str, ...]) -> list[VertexContext]:

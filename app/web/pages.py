@@ -30,10 +30,10 @@ from app.web.contexts import (
 from app.web.demos import Demos
 from app.web.forms import Outcome, Post, accept, read_post
 from app.web.rendering import page, render
+from app.web.views import LARGE_COOKIE, is_large
 
 router = APIRouter()
 FRAGMENTS = ("status", "data", "diagram", "findings", "descent")
-LARGE_COOKIE = "type"
 _YEAR = 365 * 24 * 3600
 
 
@@ -44,7 +44,7 @@ async def desk(request: Request) -> Response:
 
     def work() -> str:
         context = _context(state.store, state.demos, state.store.current(), "")
-        return render("desk.html", desk=context, large=_is_large(request), document_text="", document_faults=())
+        return render("desk.html", desk=context, large=is_large(request), document_text="", document_faults=())
 
     return HTMLResponse(await state.work.run(work))
 
@@ -63,7 +63,7 @@ async def edit(request: Request) -> Response:
         if not outcome.message:
             return RedirectResponse("/", status_code=303)
         context = _context(state.store, state.demos, outcome.revision, outcome.message)
-        return page("desk.html", desk=context, large=_is_large(request), document_text="", document_faults=())
+        return page("desk.html", desk=context, large=is_large(request), document_text="", document_faults=())
 
     response: Response = await state.work.run(work)
     return response
@@ -98,7 +98,7 @@ async def bring_in(request: Request) -> Response:
         except PolewrightError as refusal:
             context = _context(store, state.demos, store.current(), refusal.message)
             names = {"desk": context, "document_text": text, "document_faults": refusal.places}
-            return page("desk.html", status=422, large=_is_large(request), **names)
+            return page("desk.html", status=422, large=is_large(request), **names)
         with store.turn():
             store.append(draft_of(problem, store.current().draft.next_id), "a document was brought in")
         return RedirectResponse("/", status_code=303)
@@ -128,7 +128,7 @@ async def certificate(request: Request) -> Response:
         if findings is not None:
             pairs = (("Irreducible system", findings.additive), ("Irreducible monodromy", findings.multiplicative))
             checked = [(question, check(verdict)) for question, verdict in pairs if verdict is not None]
-        return render("certificate.html", checked=checked, large=_is_large(request))
+        return render("certificate.html", checked=checked, large=is_large(request))
 
     return HTMLResponse(await request.app.state.work.run(work))
 
@@ -136,11 +136,7 @@ async def certificate(request: Request) -> Response:
 @router.get("/help")
 async def help_page(request: Request) -> Response:
     """What every entry of the page means."""
-    return page("help.html", large=_is_large(request))
-
-
-def _is_large(request: Request) -> bool:
-    return request.cookies.get(LARGE_COOKIE) == "large"
+    return page("help.html", large=is_large(request))
 
 
 def _findings(store: Store, revision: Revision) -> tuple[Findings | None, bool]:

@@ -100,7 +100,12 @@ def test_an_unknown_schema(client):
 def test_the_interface_describes_itself(client):
     described = client.get("/api/openapi.json").json()
     assert described["info"]["title"] == "Polewright"
-    assert set(described["paths"]) == {"/api/examine", "/api/schema/{name}"}
+    assert set(described["paths"]) == {
+        "/api/examine",
+        "/api/schema/{name}",
+        "/api/construct",
+        "/api/jobs/{job_id}",
+    }
     examine_described = described["paths"]["/api/examine"]["post"]
     assert {"200", "400", "403", "413", "422", "503"} <= set(examine_described["responses"])
     # every schema that the description refers to is served by the program itself
