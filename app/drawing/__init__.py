@@ -7,4 +7,8 @@ desks.
     ring.py        the order of core vertices on their ring
     layout.py      quiver → placed diagram
     svg.py         placed diagram → SVG
+    orbit_layout.py  diagram of ramified data → placed picture, with loops and negative edges
+    orbit_svg.py   that picture → SVG
+    newton.py      Newton polygon → SVG
+    markup.py      pieces of markup that all pictures share
 """

@@ -118,7 +118,7 @@ class _Placer:
             direction = _direction(k, size, start)
             self.folds.append(Fold((radius * direction[0], radius * direction[1]), count, name))
         for a, b, count in inside:
-            self.links.append(_link(self.places[a], self.places[b], count))
+            self.links.append(bundle(self.places[a], self.places[b], count))
 
     def _members(self) -> tuple[list[int], dict[int, tuple[int, str]]]:
         """Vertices on the ring in the given order, and marks for those left out: place → (number, in words)."""
@@ -209,7 +209,7 @@ def _middle(a: Point, b: Point) -> Point:
     return ((a[0] + b[0]) / 2, (a[1] + b[1]) / 2)
 
 
-def _link(a: Point, b: Point, count: int) -> Link:
+def bundle(a: Point, b: Point, count: int) -> Link:
     """Parallel curves for a multiple edge; from ``_MOST_CURVES`` on one curve with its number."""
     middle = _middle(a, b)
     length = hypot(b[0] - a[0], b[1] - a[1]) or 1.0

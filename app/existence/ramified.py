@@ -38,11 +38,12 @@ from app.existence.ramified_certificates import (
     LargeEigenspace,
     RigidityExcess,
 )
-from app.existence.residue_sum import exponent_difference, find_residue_sum
+from app.existence.residue_sum import find_residue_sum
 from app.existence.verdict import FuchsDefect, Verdict
 from app.local.formal_type import Pole
 from app.local.orbit import rigidity_index
 from app.local.problem import Problem
+from app.roots.build import slope_of_difference
 
 _SOURCE = "[Kulkarni, Livesay, Matherne, Nguyen and Sage, Adv. Math. 408 (2022)]"
 
@@ -173,7 +174,7 @@ def _least_rank(pole: Pole) -> tuple[int, int, int]:
     found = []
     for j, block in enumerate(pole.blocks):
         rest = sum(
-            other.multiplicity * (int(exponent_difference(other.exponent, block.exponent)) + 1)
+            other.multiplicity * (slope_of_difference(other.exponent, block.exponent) + 1)
             for other in pole.blocks
             if other is not block
         )

@@ -12,8 +12,9 @@ from operator import mul
 
 from app.exact.modular import NoSpecialisation, Specialisation, specialisation
 from app.existence.ramified_certificates import Gauge, IntegerMatrix, ResidueSum
-from app.local.formal_type import Exponent, Pole
+from app.local.formal_type import Pole
 from app.local.problem import Problem
+from app.roots.build import slope_of_difference
 
 _PRIME = 2**61 - 1
 _LARGEST_WORK = 60
@@ -21,12 +22,6 @@ _ATTEMPTS = 3
 _ENTRY = 9
 
 Rows = list[list[int]]
-
-
-def exponent_difference(first: Exponent, second: Exponent) -> Fraction:
-    """Slope of q − q' for unramified exponents: the largest power at which they differ."""
-    a, b = dict(first.terms), dict(second.terms)
-    return max((power for power in {*a, *b} if a.get(power) != b.get(power)), default=Fraction(0))
 
 
 def find_residue_sum(problem: Problem, pole: int, slope: Fraction, others: list[int]) -> ResidueSum | None:
@@ -42,8 +37,10 @@ def find_residue_sum(problem: Problem, pole: int, slope: Fraction, others: list[
     Cost: for every pole of order s about s² products of n × n matrices.
     """
     rank = problem.rank
-    orders = [int(max(exponent_difference(a.exponent, b.exponent) for a in p.blocks for b in p.blocks))
-              for p in (problem.poles[i] for i in others)]  # fmt: skip
+    orders = [
+        max(slope_of_difference(first.exponent, second.exponent) for first in blocks for second in blocks)
+        for blocks in (problem.poles[i].blocks for i in others)
+    ]
     if rank * (1 + sum(orders)) > _LARGEST_WORK:
         return None
     for seed in range(_ATTEMPTS):
