@@ -14,7 +14,7 @@ from app import VERSION
 from app.desk.store import Store
 from app.errors import PolewrightError
 from app.jobs.pool import Jobs
-from app.web import api, connections, fonts, jobs_api, operating, pages
+from app.web import api, connections, fonts, jobs_api, operate_api, operating, pages, walls
 from app.web.demos import Demos
 from app.web.guard import Guard
 from app.web.refusals import on_framework_error, on_refusal, on_validation_error
@@ -68,8 +68,9 @@ def create_application(settings: Settings) -> FastAPI:
     application.state.work = Work()
     application.state.jobs = jobs
     application.include_router(api.router)
-    application.include_router(jobs_api.router)
-    for shown in (pages, connections, operating, fonts):
+    for interface in (jobs_api, operate_api):
+        application.include_router(interface.router)
+    for shown in (pages, connections, operating, walls, fonts):
         application.include_router(shown.router, include_in_schema=False)
     application.mount("/static", StaticFiles(directory=STATIC, check_dir=False), name="static")
     application.add_middleware(Guard, port=settings.port)

@@ -105,6 +105,9 @@ def test_the_interface_describes_itself(client):
         "/api/schema/{name}",
         "/api/construct",
         "/api/jobs/{job_id}",
+        "/api/operate",
+        "/api/walls",
+        "/api/closures",
     }
     examine_described = described["paths"]["/api/examine"]["post"]
     assert {"200", "400", "403", "413", "422", "503"} <= set(examine_described["responses"])
