@@ -50,6 +50,8 @@ DEFAULT_TIME_LIMIT = 60.0
 MAXIMUM_RANK = 32
 MAXIMUM_SIZE = 2048
 _SEEDS = 5
+_SEED_STEP = 1000
+_ATTEMPTS = 3
 
 
 @dataclass(frozen=True)
@@ -164,42 +166,59 @@ def _shortened(parts: list[list[ExactMatrix]]) -> list[list[ExactMatrix]]:
 
 
 def _floating(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
-    """A numerical point on the fundamental datum, ascended."""
-    from app.connection.numerical_point import find_point
+    """A numerical point on the fundamental datum, ascended; the first of a few that is verified, else the first."""
+    from app.connection.numerical_point import Point, find_point
 
     values = _values(problem, seed)
     special = problem_at(problem, values)
     descent = descend(special)
     if descent.blocked:
         raise Refused("These values of the symbols are not generic enough: the descent of the data stops.")
-    point = find_point(descent.last, seed, progress)
-    if not point.converged:
-        return _not_found(
-            problem, verdict, f"Newton's method did not converge from {point.starts} starts", point.residual
+    best: Construction | None = None
+    missed: Point | None = None
+    for attempt in range(_ATTEMPTS):
+        point = find_point(descent.last, seed + _SEED_STEP * attempt, progress)
+        if not point.converged:
+            missed = point
+            continue
+        parts = ascend(descent, point.parts, progress)
+        method = (
+            f"Numerical: Newton's method on the fundamental datum of rank {descent.last.rank} (start {point.starts})"
         )
-    parts = ascend(descent, point.parts, progress)
-    method = f"Numerical: Newton's method on the fundamental datum of rank {descent.last.rank} (start {point.starts})"
-    method += ", then middle convolutions and twists." if descent.steps else "."
-    connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], parts))
-    return _finished(problem, verdict, connection, method, progress)
+        method += ", then middle convolutions and twists." if descent.steps else "."
+        connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], parts))
+        built = _finished(problem, verdict, connection, method, progress)
+        if built.verified:
+            return built
+        best = best or built
+    if best is not None or missed is None:
+        return best or _not_found(problem, verdict, "No start was made", float("inf"))
+    starts = missed.starts * _ATTEMPTS
+    return _not_found(problem, verdict, f"Newton's method did not converge from {starts} starts", missed.residual)
 
 
 def _direct(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
-    """A numerical point directly on the problem's orbits."""
+    """A numerical point directly on the problem's orbits; where none is good, one by ascent."""
     from app.connection.numerical_point import find_point
 
     values = _values(problem, seed)
     special = problem_at(problem, values)
-    point = find_point(stage_of(special), seed, progress)
-    if not point.converged:
-        if verdict.exists:
-            return _floating(problem, verdict, seed, progress)
-        return _not_found(
-            problem, verdict, f"Newton's method did not converge from {point.starts} starts", point.residual
-        )
-    method = f"Numerical: Newton's method on the orbits themselves (start {point.starts})."
-    connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], point.parts))
-    return _finished(problem, verdict, connection, method, progress)
+    best: Construction | None = None
+    for attempt in range(_ATTEMPTS):
+        point = find_point(stage_of(special), seed + _SEED_STEP * attempt, progress)
+        if not point.converged:
+            continue
+        method = f"Numerical: Newton's method on the orbits themselves (start {point.starts})."
+        connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], point.parts))
+        built = _finished(problem, verdict, connection, method, progress)
+        if built.verified:
+            return built
+        best = best or built
+    if verdict.exists:
+        ascended = _floating(problem, verdict, seed, progress)
+        if ascended.verified or best is None:
+            return ascended
+    return best or _not_found(problem, verdict, "Newton's method did not converge from any start", point.residual)
 
 
 def _illustration(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
@@ -224,6 +243,8 @@ def _not_found(
     problem: Problem, verdict: Verdict, words: str, residual: float, method: str = "Numerical search."
 ) -> Construction:
     note = f"{words}; the best one missed the sum of residues by {residual:.1e} relative to the largest coefficient."
+    if residual == float("inf"):
+        note = f"{words}; all ran away along the orbits."
     return Construction(problem, None, method, verdict.exists, note)
 
 
@@ -279,7 +300,7 @@ def _values(problem: Problem, seed: int) -> dict[str, Value]:
     """Generic values for all symbols under which the problem keeps its verdict."""
     asked = additive_verdict(problem, quiver := quiver_of(problem), reduce(quiver))
     for attempt in range(_SEEDS):
-        values = generic_values(problem.symbols, seed + 1000 * attempt)
+        values = generic_values(problem.symbols, seed + _SEED_STEP * attempt)
         try:
             special = problem_at(problem, values)
         except Refused:

@@ -27,6 +27,7 @@ ITERATIONS = 200
 _GOAL = 1e-13
 _LARGEST_STEP = 1.0
 _LARGEST_ENTRY = 1e7
+_LARGEST_CONDITION = 1e8
 _SMALLEST_SCALE = 1e-4
 _SWEEPS = 10
 _BALANCED = 0.02
@@ -50,13 +51,13 @@ def find_point(stage: Stage, seed: int, progress: Progress, starts: int = STARTS
     """
     normal = [_normal_form(blocks) for blocks in stage.poles]
     excess = floating(stage.excess)
-    real = bool(np.isreal(excess)) and all(np.isrealobj(part) or not part.imag.any() for part in normal)
+    real = bool(np.isreal(excess)) and not any(one.form.imag.any() for one in normal)
     best: tuple[float, list[Array]] | None = None
     for start in range(starts):
         source = np.random.default_rng([seed, start])
         complex_start = not real or start >= starts // 2
         progress.report(f"numerical search: start {start + 1} of {starts}", start / starts)
-        found = _newton([_moved_at_random(part, source, complex_start) for part in normal], excess, progress)
+        found = _newton([_random_place(one, source, complex_start) for one in normal], excess, progress)
         if best is None or found[0] < best[0]:
             best = found
         if found[0] < _GOAL * 100:
@@ -71,8 +72,25 @@ def _point(found: tuple[float, list[Array]], starts: int, converged: bool) -> Po
     return Point(parts, found[0], starts, converged)
 
 
-def _normal_form(blocks: tuple[StageBlock, ...]) -> Array:
-    """The normal form of a pole as an array of shape (r + 1, n, n), entry k belonging to z^(−k−1) dz."""
+@dataclass(frozen=True)
+class _Normal:
+    """A normal form of shape (r + 1, n, n), entry k belonging to z^(−k−1) dz, and its eigenspaces.
+
+    ``spaces`` are ranges of columns with one formal eigenvalue, each with whether it is semisimple.
+    """
+
+    form: Array
+    spaces: tuple[tuple[range, bool], ...]
+
+    @property
+    def scalar(self) -> bool:
+        """Whether the orbit is a point."""
+        return len(self.spaces) == 1 and self.spaces[0][1]
+
+
+def _normal_form(blocks: tuple[StageBlock, ...]) -> _Normal:
+    """The normal form of a pole."""
+    spaces: list[tuple[range, bool]] = []
     size = sum(block.multiplicity for block in blocks)
     order = max((block.exponent[0][0] for block in blocks if block.exponent), default=0)
     form = np.zeros((order + 1, size, size), dtype=np.complex128)
@@ -82,13 +100,14 @@ def _normal_form(blocks: tuple[StageBlock, ...]) -> Array:
             for j in range(start, start + block.multiplicity):
                 form[k, j, j] += floating(scalar)
         for value, jordan in jordan_type(block):
+            spaces.append((range(start, start + sum(jordan)), max(jordan) == 1))
             for length in jordan:
                 for j in range(start, start + length):
                     form[0, j, j] += floating(value)
                     if j > start:
                         form[0, j - 1, j] = 1
                 start += length
-    return form
+    return _Normal(form, tuple(spaces))
 
 
 def jordan_type(block: StageBlock) -> list[tuple[Value, tuple[int, ...]]]:
@@ -99,19 +118,54 @@ def jordan_type(block: StageBlock) -> list[tuple[Value, tuple[int, ...]]]:
     return [(value, conjugate(tuple(sorted(found, reverse=True)))) for value, found in drops.items()]
 
 
-def _moved_at_random(part: Array, source: np.random.Generator, complex_start: bool) -> Array:
+@dataclass(frozen=True)
+class _Place:
+    """A point of an orbit: the normal form, the gauge as a block Toeplitz matrix, and the principal part they give."""
+
+    normal: _Normal
+    gauge: Array
+    part: Array
+
+    @classmethod
+    def of(cls, normal: _Normal, gauge: Array) -> "_Place":
+        """The point that a gauge leads to; parts are always made anew from the normal form, so no errors pile up."""
+        return cls(normal, gauge, normal.form if normal.scalar else _conjugated(normal.form, gauge))
+
+    def moved(self, factor: Array) -> "_Place":
+        """The point after a further gauge."""
+        return _Place.of(self.normal, np.asarray(factor @ self.gauge, dtype=np.complex128))
+
+    def conditioned(self) -> "_Place":
+        """The same point with a better conditioned gauge: bases of eigenspaces orthonormal, others of norm 1."""
+        length, size, _ = self.part.shape
+        factor = np.zeros((size, size), dtype=np.complex128)
+        for space, semisimple in self.normal.spaces:
+            own = np.ix_(range(size), space)
+            basis = self.gauge[:size, :size][own]
+            if semisimple:
+                factor[np.ix_(space, space)] = np.linalg.inv(np.linalg.qr(basis)[1])
+            else:
+                factor[space, space] = 1 / np.linalg.norm(basis)
+        gauge = np.asarray(self.gauge @ np.kron(np.eye(length), factor), dtype=np.complex128)
+        return _Place(self.normal, gauge, self.part)
+
+    @property
+    def condition(self) -> float:
+        """Condition number of the gauge."""
+        return 1.0 if self.normal.scalar else float(np.linalg.cond(self.gauge))
+
+
+def _random_place(normal: _Normal, source: np.random.Generator, complex_start: bool) -> _Place:
     """A random point of the orbit, by a well conditioned random gauge."""
-    length, size, _ = part.shape
-    gauge = np.zeros_like(part)
+    length, size, _ = normal.form.shape
+    gauge = np.zeros_like(normal.form)
     for k in range(length):
         gauge[k] = source.standard_normal((size, size)) * (0.4 if k else 0.5)
         if complex_start:
             gauge[k] = gauge[k] + 1j * source.standard_normal((size, size)) * 0.4
     unitary = np.linalg.qr(gauge[0])[0]
     gauge[0] = unitary @ (np.eye(size) + gauge[0] / max(1.0, np.linalg.norm(gauge[0], 2)) / 2)
-    whole = _toeplitz(gauge)
-    inverse = np.asarray(np.linalg.inv(whole), dtype=np.complex128)
-    return _conjugated(part, whole, inverse)
+    return _Place.of(normal, _toeplitz(gauge))
 
 
 def _toeplitz(series: Array) -> Array:
@@ -124,44 +178,47 @@ def _toeplitz(series: Array) -> Array:
     return whole
 
 
-def _conjugated(part: Array, gauge: Array, inverse: Array) -> Array:
-    """Principal part of g A g^(−1), gauge and inverse given as block Toeplitz matrices."""
+def _conjugated(part: Array, gauge: Array) -> Array:
+    """Principal part of g A g^(−1), the gauge given as a block Toeplitz matrix."""
     length, size, _ = part.shape
-    moved = gauge @ _toeplitz(part[::-1]) @ inverse
-    return moved[:, :size].reshape(length, size, size)[::-1].copy()
+    moved = np.linalg.solve(gauge.T, (gauge @ _toeplitz(part[::-1])).T).T
+    return np.asarray(moved[:, :size].reshape(length, size, size)[::-1], dtype=np.complex128)
 
 
-def _newton(parts: list[Array], excess: complex, progress: Progress) -> tuple[float, list[Array]]:
-    """Iterate from a start; returns the relative residual and the parts."""
-    missing = _missing(parts, excess)
+def _newton(places: list[_Place], excess: complex, progress: Progress) -> tuple[float, list[Array]]:
+    """Iterate from a start; returns the relative residual (infinite where the gauges run away) and the parts."""
     for _ in range(ITERATIONS):
         progress.check()
+        parts = [place.part for place in places]
+        missing = _missing(parts, excess)
         error, largest_entry = float(np.linalg.norm(missing)), _largest(parts)
-        if error < _GOAL * max(1.0, largest_entry) or largest_entry > _LARGEST_ENTRY:
+        if error < _GOAL * max(1.0, largest_entry):
             break
+        if largest_entry > _LARGEST_ENTRY or max(place.condition for place in places) > _LARGEST_CONDITION:
+            return float("inf"), parts
         movers = _least_norm_step(parts, missing)
         largest = _largest(movers)
         scale = min(1.0, _LARGEST_STEP / largest) if largest else 1.0
         while scale > _SMALLEST_SCALE:
-            tried = [_stepped(part, mover * scale) for part, mover in zip(parts, movers, strict=True)]
-            missing = _missing(tried, excess)
-            if float(np.linalg.norm(missing)) < error:
+            tried = [place.moved(_cayley(mover * scale)) for place, mover in zip(places, movers, strict=True)]
+            if float(np.linalg.norm(_missing([place.part for place in tried], excess))) < error:
                 break
             scale /= 2
         else:
             break
-        parts = _balanced(tried)
-        missing = _missing(parts, excess)
+        places = [place.conditioned() for place in _balanced(tried)]
+    parts = [place.part for place in places]
     return float(np.linalg.norm(_missing(parts, excess))) / max(1.0, _largest(parts)), parts
 
 
-def _balanced(parts: list[Array]) -> list[Array]:
-    """The parts after a common constant gauge that lowers Σ |A|², by a few steps of descent.
+def _balanced(places: list[_Place]) -> list[_Place]:
+    """The points after a common constant gauge that lowers Σ |A|², by a few steps of descent.
 
     The equation does not see such a gauge, and without it matrices run away along the orbits.  At the minimum
     Σ [A, A†] = 0 (Kempf and Ness, 1979).
     """
     for _ in range(_SWEEPS):
+        parts = [place.part for place in places]
         square = sum(float(np.sum(np.abs(part) ** 2)) for part in parts)
         moment = sum(
             np.einsum("kij,klj->il", part, part.conj()) - np.einsum("kji,kjl->il", part.conj(), part) for part in parts
@@ -169,10 +226,9 @@ def _balanced(parts: list[Array]) -> list[Array]:
         if float(np.linalg.norm(moment)) <= _BALANCED * square:
             break
         sizes, vectors = np.linalg.eigh(moment / (2 * square))
-        forth = (vectors * np.exp(-sizes)) @ vectors.conj().T
-        back = (vectors * np.exp(sizes)) @ vectors.conj().T
-        parts = [np.asarray(forth @ part @ back, dtype=np.complex128) for part in parts]
-    return parts
+        factor = (vectors * np.exp(-sizes)) @ vectors.conj().T
+        places = [place.moved(np.kron(np.eye(len(place.part)), factor)) for place in places]
+    return places
 
 
 def _largest(parts: Sequence[Array]) -> float:
@@ -201,10 +257,8 @@ def _least_norm_step(parts: Sequence[Array], missing: Array) -> list[Array]:
     return [np.stack([solution @ matrix.conj().T - matrix.conj().T @ solution for matrix in part]) for part in parts]
 
 
-def _stepped(part: Array, mover: Array) -> Array:
-    """The part after the Cayley transform of the mover."""
+def _cayley(mover: Array) -> Array:
+    """The Cayley transform of a mover, as a block Toeplitz matrix."""
     whole = _toeplitz(mover) / 2
     one = np.eye(whole.shape[0])
-    gauge = np.asarray(np.linalg.solve(one - whole, one + whole), dtype=np.complex128)
-    inverse = np.asarray(np.linalg.solve(one + whole, one - whole), dtype=np.complex128)
-    return _conjugated(part, gauge, inverse)
+    return np.asarray(np.linalg.solve(one - whole, one + whole), dtype=np.complex128)

@@ -23,6 +23,7 @@ from app.progress import Progress
 GAP = 1e3
 SMALL = 1e-7
 """Relative size below which a singular value or a defect counts as 0."""
+_FLOOR = 1e-2
 
 
 def floating_checks(problem: Problem, connection: Connection, progress: Progress) -> Iterator[Check]:
@@ -78,20 +79,25 @@ def _class_check(number: int, pole: Pole, part: Sequence[FloatMatrix]) -> tuple[
         residues = list(reduced.residues)
         words = f"formal reduction to {len(sizes)} exponents with defect {defect:.1e}; "
     holds, worst, figures = defect < SMALL, defect, []
+    floor = _FLOOR * max(float(np.abs(matrix.array).max()) for matrix in part)
     for block, residue in zip(pole.blocks, residues, strict=True):
-        right, distance, figure = _class_of(residue.array, block.residue)
+        right, distance, figure = _class_of(residue.array, block.residue, floor)
         holds, worst = holds and right, max(worst, distance)
         figures.append(figure)
     return Check(name, holds, words + "; ".join(figures)), worst
 
 
-def _class_of(matrix: Array, eigenvalues: Sequence[Eigenvalue]) -> tuple[bool, float, str]:
-    """Whether a matrix is near the class: for every eigenvalue the ranks of powers, last kept and first dropped."""
+def _class_of(matrix: Array, eigenvalues: Sequence[Eigenvalue], floor: float) -> tuple[bool, float, str]:
+    """Whether a matrix is near the class: for every eigenvalue the ranks of powers, last kept and first dropped.
+
+    Sizes are relative to the norm of L − ξ, but at least to ``floor``: what is rounding beside the principal part as a
+    whole is nothing.
+    """
     size = matrix.shape[0]
     holds, worst, words = True, 0.0, []
     for eigenvalue in eigenvalues:
         moved = matrix - floating(eigenvalue.value) * np.eye(size)
-        norm = max(float(np.linalg.norm(moved, 2)), abs(floating(eigenvalue.value)), 1e-300)
+        norm = max(float(np.linalg.norm(moved, 2)), abs(floating(eigenvalue.value)), floor, 1e-300)
         power = np.eye(size, dtype=np.complex128)
         nullity = 0
         for k, drop in enumerate(eigenvalue.nullities):
@@ -131,10 +137,11 @@ def _tangent_check(parts: Sequence[Sequence[Array]], expected: int) -> Check:
     whole, gap, residues = 0, np.inf, []
     for part in parts:
         rows = _tangent_map(part)
-        rank, found = _rank_with_gap(rows)
+        rank, found = _rank_with_gap(rows, max(float(np.abs(array).max(initial=0)) for array in part))
         whole, gap = whole + rank, min(gap, found)
         residues.append(rows[: size * size])
-    rank, found = _rank_with_gap(np.concatenate(residues, axis=1))
+    scale = max(float(np.abs(array).max(initial=0)) for part in parts for array in part)
+    rank, found = _rank_with_gap(np.concatenate(residues, axis=1), scale)
     dimension = whole - rank - (size * size - 1)
     return Check(
         "tangent dimension", dimension == expected, f"{dimension}, expected {expected} (gap {min(gap, found):.0e})"
@@ -151,13 +158,16 @@ def _tangent_map(part: Sequence[Array]) -> Array:
     return np.asarray(np.block(rows), dtype=np.complex128)
 
 
-def _rank_with_gap(matrix: Array) -> tuple[int, float]:
-    """The numerical rank, and the ratio of the last singular value kept to the first dropped."""
+def _rank_with_gap(matrix: Array, scale: float) -> tuple[int, float]:
+    """The numerical rank, and the ratio of the last singular value kept to the first dropped.
+
+    Sizes are relative to ``scale``, the largest entry of what the map was made from: where that is scalar, the map is
+    rounding and nothing else.
+    """
     sizes = np.linalg.svd(matrix, compute_uv=False)
-    largest = float(sizes.max(initial=0))
-    if not largest:
+    if not scale:
         return 0, np.inf
-    relative = np.maximum(sizes / largest, 1e-17)
+    relative = np.maximum(sizes / scale, 1e-17)
     rank = int((relative > SMALL).sum())
     if rank == 0 or rank == len(relative):
         return rank, np.inf
