@@ -10,11 +10,14 @@ from typing import Any
 import pytest
 
 from app.errors import Refused
+from app.existence import check_ramified as check_module
+from app.existence import residue_sum
 from app.existence.check_ramified import check_ramified
 from app.existence.problems import additive_verdict
 from app.existence.ramified import maximal_slope
 from app.existence.ramified_certificates import (
     FreeResidue,
+    Gauge,
     JordanBlocks,
     LargeEigenspace,
     RamifiedCertificate,
@@ -264,6 +267,36 @@ def test_a_rigidity_index_above_two_refutes() -> None:
     )
     verdict = decided(two_orbits)
     assert verdict.exists is False and verdict.ramified == RigidityExcess(rigidity_index(two_orbits))
+
+
+def test_two_ways_to_the_residue_of_a_gauged_normal_form() -> None:
+    """The search solves A·g = g·Λ from the highest pole down, the check multiplies by the inverse series."""
+    source = random.Random(12)
+    shapes = ["((1)(1))((2))", "(((1))((1)))(((1)(1)))", "(2)(1)(1)", "22"]
+    for shorthand in shapes:
+        problem = problem_from_shorthand(shorthand)
+        (at,) = problem.poles
+        order = max(int(b.exponent.slope) for b in at.blocks)
+        terms = tuple(tuple(tuple(source.randint(-9, 9) for _ in range(4)) for _ in range(4)) for _ in range(order + 1))
+        image = residue_sum._image(problem, [0], 5)
+        gauge = Gauge(0, terms)
+        solved = residue_sum._gauged_residue(residue_sum._normal_form(at, order + 1, image), gauge, image)
+        multiplied = check_module._residue(at, gauge, image)
+        assert all((a - b) % image.prime == 0 for rows in zip(solved, multiplied, strict=True)
+                   for a, b in zip(*rows, strict=True))  # fmt: skip
+        # the trace is that of the normal form, whatever the gauge
+        wanted = sum(image.value(e.value) * e.multiplicity for b in at.blocks for e in b.residue)
+        assert (sum(solved[k][k] for k in range(4)) - wanted) % image.prime == 0
+
+
+def test_a_leading_power_of_smaller_index_is_not_maximal() -> None:
+    """z^(−3/2) + z^(−5/4) is one orbit of index 4, but its leading term has equal conjugates."""
+    problem = problem_from_shorthand("((1)_5/4)_3/2")
+    assert maximal_slope(problem.poles[0]) is None and decided(problem).exists is None
+    claimed = JordanBlocks(0, Fraction(3, 2), None, (4,))
+    for slope in ("3/2", "5/4"):
+        checks = check_ramified(problem, replace(claimed, slope=Fraction(slope)), False)
+        assert any(not check.holds for check in checks)
 
 
 def test_what_no_theorem_decides_stays_open() -> None:
