@@ -51,3 +51,26 @@ def test_narrow_screens_do_not_scroll_sideways(
     for shorthand in ("1^9,1^9,81", "(11)(1),(1)(1)(1),21"):
         desk.read_type(shorthand)
         assert desk.page.evaluate("() => document.documentElement.scrollWidth") <= width
+
+
+@pytest.mark.parametrize(
+    "button",
+    [
+        "Operations at 0.0",
+        "Operations on the whole problem",
+        "Play the descent step by step",
+        "Walls and closures",
+        "Construct with values and choices",
+        "Construct matrices",
+    ],
+)
+def test_pages_that_the_desk_leads_to(desk_at: Callable[..., Desk], shared_server: Running, button: str) -> None:
+    desk = desk_at(shared_server, bypass_csp=True).open()
+    desk.read_type("21,111,111")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name=button, exact=True).click()
+    if button == "Construct matrices":
+        desk.page.get_by_text("Verification record").wait_for()
+    for details in desk.page.locator("details").all():
+        details.evaluate("element => { element.open = true }")
+    assert violations(desk) == []

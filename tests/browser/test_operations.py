@@ -1,0 +1,46 @@
+"""From the desk to operations, descent and matrices, and back, by the keyboard where it matters."""
+
+from tests.browser.conftest import Desk
+
+
+def test_an_operation_at_a_vertex_is_carried_out_and_taken_over(desk: Desk) -> None:
+    desk.read_type("21,111,111")
+    desk.page.get_by_role("button", name="Operations at 0.0", exact=True).focus()
+    with desk.page.expect_navigation():
+        desk.page.keyboard.press("Enter")
+    assert desk.page.get_by_text("Condition:").count() >= 3
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Middle convolution").first.click()
+    assert "Rank 3 → 2" in desk.page.inner_text("main")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Put this problem on the desk").click()
+    assert desk.page.input_value("#shorthand") == "11,11,11"
+    desk.press("Undo")
+    assert desk.page.input_value("#shorthand") == "21,111,111"
+
+
+def test_the_descent_is_played_forward_and_back(desk: Desk) -> None:
+    desk.read_type("1^4,1^4,31")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Play the descent step by step").click()
+    for heading in ("after step 1", "after step 2"):
+        with desk.page.expect_navigation():
+            desk.page.get_by_role("button", name="Forward").click()
+        assert heading in desk.page.inner_text("h1")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Back").click()
+    assert "after step 1" in desk.page.inner_text("h1")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="All").click()
+    assert "The rank is 1." in desk.page.inner_text("main")
+
+
+def test_matrices_come_with_their_record(desk: Desk) -> None:
+    desk.read_type("11,11,11,11")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Construct matrices").click()
+    desk.page.get_by_text("Verification record").wait_for()
+    text = desk.page.inner_text("main")
+    assert "Accessory parameters" in text and "tangent dimension" in text
+    assert desk.page.locator("math").count() >= 4
+    assert desk.complaints == []
