@@ -95,7 +95,7 @@ def _parser() -> argparse.ArgumentParser:
     checking.set_defaults(run=_check)
 
     describing = commands.add_parser("schema", help="JSON Schema of a document or result")
-    describing.add_argument("name", metavar="NAME", help="problem, findings or error")
+    describing.add_argument("name", metavar="NAME", help="problem, findings, connection or error")
     describing.set_defaults(run=_schema)
     return parser
 

@@ -93,8 +93,9 @@ def _not_principal(position: int, power: Fraction, coordinate: str) -> NumberFau
     """The fault of a term that an exponent may not have."""
     kind = "a constant term" if power == 0 else f"a positive power of {coordinate}"
     expected = f"negative powers of {coordinate} only, for example a/{coordinate}^2"
-    return NumberFault(f"An exponent has no constant term and no positive powers of {coordinate}; this is {kind}",
-                       position, expected)
+    return NumberFault(
+        f"An exponent has no constant term and no positive powers of {coordinate}; this is {kind}", position, expected
+    )
 
 
 class _Parser:
@@ -102,8 +103,11 @@ class _Parser:
 
     def __init__(self, text: str, symbols: Collection[str], coordinate: str | None, budget: Budget | None) -> None:
         if len(text) > MAX_CHARACTERS:
-            raise NumberFault(f"A number has at most {MAX_CHARACTERS:,} characters; this has {len(text):,}",
-                              MAX_CHARACTERS, "a shorter text")
+            raise NumberFault(
+                f"A number has at most {MAX_CHARACTERS:,} characters; this has {len(text):,}",
+                MAX_CHARACTERS,
+                "a shorter text",
+            )
         self._text = text
         self._tokens = tokens_of(text)
         self._place = 0
@@ -136,8 +140,11 @@ class _Parser:
         for radical, position in self._roots:
             seen.add(radical)
             if independent_root_count(seen, MAX_ROOTS) > MAX_ROOTS:
-                raise NumberFault(f"There are more than {MAX_ROOTS} independent square roots; this is one too many",
-                                  position, f"at most {MAX_ROOTS} independent square roots")
+                raise NumberFault(
+                    f"There are more than {MAX_ROOTS} independent square roots; this is one too many",
+                    position,
+                    f"at most {MAX_ROOTS} independent square roots",
+                )
 
     def check_written_length(self, value: Value) -> None:
         """What is read must be readable when written again in canonical form."""
@@ -146,8 +153,11 @@ class _Parser:
         # Large roots may be written as up to three; the length is bounded without factoring them.
         large_roots = sum(abs(radical) > MAX_RADICAND for _, radical in value.terms)
         if len(readable_text(value)) + 20 * large_roots > MAX_CHARACTERS:
-            raise NumberFault(f"Expanded, this number would have more than {MAX_CHARACTERS:,} characters", 0,
-                              "a number with fewer or shorter terms")
+            raise NumberFault(
+                f"Expanded, this number would have more than {MAX_CHARACTERS:,} characters",
+                0,
+                "a number with fewer or shorter terms",
+            )
 
     # --- tokens
 
@@ -242,8 +252,9 @@ class _Parser:
         if exponent is None:
             raise NumberFault("An exponent is an integer", exponent_place, "an integer, for example ^2")
         if self._sign == "^":
-            raise NumberFault("A power of a power is ambiguous without parentheses", self._token.position,
-                              "(2^3)^2 or 2^(3^2)")
+            raise NumberFault(
+                "A power of a power is ambiguous without parentheses", self._token.position, "(2^3)^2 or 2^(3^2)"
+            )
         return self._raised(base, -exponent if negative else exponent, place, sign.position, exponent_place)
 
     def _raised(self, base: Value, exponent: Fraction, place: int, sign_place: int, exponent_place: int) -> Value:
@@ -262,11 +273,15 @@ class _Parser:
         coordinate = self._coordinate
         if coordinate is None or base != Value.symbol(coordinate):
             expected = "an integer" if coordinate is None else f"an integer, or a power of {coordinate} alone"
-            raise NumberFault("A fractional power is not read here; square roots are written sqrt(…)",
-                              exponent_place, expected)
+            raise NumberFault(
+                "A fractional power is not read here; square roots are written sqrt(…)", exponent_place, expected
+            )
         if exponent.denominator > MAX_RAMIFICATION:
-            raise NumberFault(f"Fractional powers of {coordinate} have denominators up to {MAX_RAMIFICATION}",
-                              exponent_place, f"a denominator of at most {MAX_RAMIFICATION}")
+            raise NumberFault(
+                f"Fractional powers of {coordinate} have denominators up to {MAX_RAMIFICATION}",
+                exponent_place,
+                f"a denominator of at most {MAX_RAMIFICATION}",
+            )
         return Value({(((coordinate, exponent),), 1): 1})
 
     def _inverse(self, divisor: Value, place: int, subject: str = "Division") -> Value:
@@ -283,8 +298,11 @@ class _Parser:
             return self._inverse(divisor * back, place, subject) * back
         if not divisor.is_constant:
             powers = f" and powers of {self._coordinate}" if self._coordinate else ""
-            raise NumberFault(f"{subject} is by constants{powers} only; here is a symbol in the divisor", place,
-                              "a divisor without symbols")
+            raise NumberFault(
+                f"{subject} is by constants{powers} only; here is a symbol in the divisor",
+                place,
+                "a divisor without symbols",
+            )
         with _At(place):
             return bounded.inverse(divisor, self._budget)
 
@@ -305,8 +323,11 @@ class _Parser:
         whole, _, decimals = token.text.partition(".")
         digits = (whole + decimals).lstrip("0")
         if max(len(digits), len(decimals) + 1 if decimals else 0) > MAX_DIGITS:
-            raise NumberFault(f"An integer has at most {MAX_DIGITS} digits", token.position,
-                              f"an integer of at most {MAX_DIGITS} digits")
+            raise NumberFault(
+                f"An integer has at most {MAX_DIGITS} digits",
+                token.position,
+                f"an integer of at most {MAX_DIGITS} digits",
+            )
         number = int(digits or "0")
         return Value.rational(Fraction(number, 10 ** len(decimals)) if decimals else number)
 
@@ -320,8 +341,11 @@ class _Parser:
             raise NumberFault("infinity is a position and no number", token.position, "an exact number")
         if name == self._coordinate:
             if name in self._symbols:
-                raise NumberFault(f"{name} is the coordinate here and a symbol of the problem as well",
-                                  token.position, "another name for the symbol")
+                raise NumberFault(
+                    f"{name} is the coordinate here and a symbol of the problem as well",
+                    token.position,
+                    "another name for the symbol",
+                )
             return Value.symbol(name)
         if name not in self._symbols:
             raise NumberFault(f'"{_short(name)}" is not a declared symbol', token.position, self._known_symbols())
@@ -348,8 +372,11 @@ class _Parser:
 
     def _parenthesised(self, opening: Token) -> Value:
         if self._nesting == MAX_NESTING:
-            raise NumberFault(f"Parentheses are nested more than {MAX_NESTING} deep", opening.position,
-                              f"at most {MAX_NESTING} levels")
+            raise NumberFault(
+                f"Parentheses are nested more than {MAX_NESTING} deep",
+                opening.position,
+                f"at most {MAX_NESTING} levels",
+            )
         self._nesting += 1
         value = self._sum()
         if self._sign != ")":

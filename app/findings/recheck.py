@@ -13,11 +13,12 @@ from app.existence.check import Check, check_certificate
 from app.existence.problems import local_monodromy_problem
 from app.existence.verdict import Certificate, Decomposition, FuchsDefect, NotARoot, Part, Reflections, Step
 from app.findings.findings import examine
+from app.findings.ramified_json import ramified_checks
 from app.local.problem import Problem
 from app.roots.build import quiver_of
 from app.roots.quiver import Quiver
 
-_FIGURES = ("rank", "dimension", "rigidity_index", "fuchs", "solved", "orbits", "quiver", "root")
+_FIGURES = ("rank", "dimension", "rigidity_index", "fuchs", "solved", "orbits", "formal", "quiver", "diagram", "root")
 
 
 def recheck(problem: Problem, findings: object) -> tuple[Check, ...]:
@@ -31,6 +32,8 @@ def recheck(problem: Problem, findings: object) -> tuple[Check, ...]:
     checks = [Check(f"{key} as computed anew", _plain(findings.get(key)) == _plain(computed[key])) for key in _FIGURES]
     if not problem.ramified:
         checks += _verdict_checks(quiver_of(problem), findings, "additive", problem, modulo_integers=False)
+    else:
+        checks += ramified_checks(problem, findings)
     if problem.all_log:
         merged = quiver_of(local_monodromy_problem(problem))
         checks += _verdict_checks(merged, findings, "multiplicative", problem, modulo_integers=True)

@@ -7,11 +7,17 @@ from typing import Any
 
 from pydantic import TypeAdapter
 
+from app.connection.document import ConnectionDocument
 from app.errors import NotFound
 from app.findings.types import ErrorJson, FindingsJson
 from app.local.document_types import ProblemDocument
 
-_TYPES: dict[str, type] = {"problem": ProblemDocument, "findings": FindingsJson, "error": ErrorJson}
+_TYPES: dict[str, type] = {
+    "problem": ProblemDocument,
+    "findings": FindingsJson,
+    "connection": ConnectionDocument,
+    "error": ErrorJson,
+}
 NAMES = tuple(_TYPES)
 
 

@@ -14,15 +14,19 @@ from markupsafe import Markup
 from app.desk.draft import Draft
 from app.desk.reading import FieldFault
 from app.drawing.layout import place
+from app.drawing.newton import newton_svg
+from app.drawing.orbit_layout import orbit_description, orbit_vertex_name, place_orbits
+from app.drawing.orbit_svg import orbit_svg
 from app.drawing.svg import small_svg, svg
 from app.exact.number import write_number
-from app.existence.verdict import Decomposition, FuchsDefect, NotARoot, Reflections, Verdict
+from app.existence.verdict import Verdict
 from app.findings.findings import Findings
 from app.local.formal_type import Block
 from app.local.problem import Problem
 from app.local.writer import canonical_text
 from app.roots.form import p_of
-from app.roots.quiver import Quiver, Vector, Vertex
+from app.roots.quiver import Quiver, Vertex
+from app.web.certificate_words import certificate_words
 from app.web.demos import Demo
 from app.web.mathematics import exponent_mathml, type_mathml, value_mathml
 
@@ -103,16 +107,28 @@ class VertexContext:
 
 
 @dataclass(frozen=True)
-class DiagramContext:
-    """The diagram as markup, and its vertices; ``picture`` is None where there is no quiver.
+class PolygonContext:
+    """The Newton polygon of an irregular pole: its number, picture, irregularity and slopes in words."""
 
+    pole: int
+    picture: Markup
+    words: str
+
+
+@dataclass(frozen=True)
+class DiagramContext:
+    """The diagram as markup, its vertices, and the Newton polygons of irregular poles.
+
+    ``weighted``: ramified data, whose vertices have weights and no parameters; these stand in their place.
     ``document`` goes with the buttons that lead to other pages; it is "" for problems too large for those.
     """
 
-    picture: Markup | None
+    picture: Markup
     vertices: tuple[VertexContext, ...]
     type: Markup
     document: str
+    weighted: bool = False
+    polygons: tuple[PolygonContext, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -217,39 +233,8 @@ def _verdict(findings: Findings, verdict: Verdict, question: str) -> VerdictCont
         answer = f"Whether an {thing} exists is not decided."
     outcome = {True: "yes", False: "no", None: "open"}[verdict.exists]
     return VerdictContext(
-        question, answer, outcome, STATUS_WORDS[verdict.status], verdict.reason, tuple(_certificate_words(verdict))
+        question, answer, outcome, STATUS_WORDS[verdict.status], verdict.reason, tuple(certificate_words(verdict))
     )
-
-
-def _certificate_words(verdict: Verdict) -> list[str]:
-    certificate, quiver = verdict.certificate, verdict.quiver
-    if certificate is None or quiver is None:
-        return []
-    match certificate:
-        case Reflections(steps, reduced, criterion):
-            return [*_steps_words(steps), f"reduced vector: {_vector(quiver, reduced)}", f"criterion: {criterion}"]
-        case NotARoot(steps, reduced, failure):
-            return [*_steps_words(steps), f"vector reached: {_vector(quiver, reduced)}", f"failure: {failure}"]
-        case Decomposition(parts, criterion):
-            words = [f"{q.multiplicity} × ({_vector(quiver, q.vector)}), p = {q.p}" for q in parts]
-            return ["α is the sum of the positive roots", *words, f"found by: {criterion}"]
-        case FuchsDefect():
-            return []
-
-
-def _steps_words(steps: tuple[str | tuple[str, ...], ...]) -> list[str]:
-    words = [step if isinstance(step, str) else " ".join(step) for step in steps[:STEPS_LISTED]]
-    if not words:
-        return ["no reflections needed"]
-    more = f", and {len(steps) - STEPS_LISTED} more" if len(steps) > STEPS_LISTED else ""
-    shortened = (word if len(word) < 60 else word[:57] + "…" for word in words)
-    return [f"reflections at {', '.join(shortened)}{more}"]
-
-
-def _vector(quiver: Quiver, vector: Vector) -> str:
-    entries = [f"{v.id}: {n}" for v, n in zip(quiver.vertices, vector, strict=True) if n]
-    more = f", and {len(entries) - STEPS_LISTED} more" if len(entries) > STEPS_LISTED else ""
-    return ", ".join(entries[:STEPS_LISTED]) + more
 
 
 def _figures(findings: Findings) -> list[FigureContext]:
@@ -299,7 +284,7 @@ def diagram_context(findings: Findings, selected: str | None = None) -> DiagramC
     """The diagram and its vertices.  Cost: linear in what is drawn and listed."""
     quiver = findings.quiver
     if quiver is None:
-        return DiagramContext(None, (), Markup(""), "")
+        return _orbit_diagram(findings)
     symbols = findings.problem.symbols
     title = f"Quiver of type {findings.support_type}"
     description = (
@@ -315,7 +300,40 @@ def diagram_context(findings: Findings, selected: str | None = None) -> DiagramC
     if len(document) > DOCUMENT_CARRIED:
         document = ""
     vertices = tuple(_vertices(quiver, symbols))
-    return DiagramContext(picture, vertices, type_mathml(findings.support_type or ""), document)
+    type_ = type_mathml(findings.support_type or "")
+    return DiagramContext(picture, vertices, type_, document, polygons=_polygons(findings))
+
+
+def _orbit_diagram(findings: Findings) -> DiagramContext:
+    """The diagram of ramified data: Galois orbits with weights, negative edges and loops."""
+    diagram = findings.diagram
+    if diagram is None:
+        return DiagramContext(Markup(""), (), Markup(""), "")
+    picture = orbit_svg(
+        place_orbits(diagram),
+        title="Diagram of Galois orbits",
+        description=orbit_description(diagram),
+        wrap=lambda vertex_id, markup: f'<a href="#vertex-{vertex_id}" class="vertex-link">{markup}</a>',
+    )
+    vertices = tuple(
+        VertexContext(v.id, v.role, orbit_vertex_name(v).partition(":")[0], v.dimension, Markup(v.weight))
+        for v in diagram.vertices[: 4 * LIST_SHOWN]
+    )
+    document = canonical_text(findings.problem)
+    carried = document if len(document) <= DOCUMENT_CARRIED else ""
+    return DiagramContext(Markup(picture), vertices, Markup(""), carried, True, _polygons(findings))
+
+
+def _polygons(findings: Findings) -> tuple[PolygonContext, ...]:
+    shown: list[PolygonContext] = []
+    for figure in findings.formal:
+        if figure.irregularity and len(shown) < LIST_SHOWN:
+            title = f"Newton polygon at pole {figure.pole + 1}"
+            picture = newton_svg(figure.newton_polygon, title=title, name=f"newton-{figure.pole}")
+            slopes = ", ".join(f"{slope} on rank {width}" for slope, width in figure.slopes)
+            words = f"irregularity {figure.irregularity}; slopes {slopes}"
+            shown.append(PolygonContext(figure.pole + 1, Markup(picture), words))
+    return tuple(shown)
 
 
 def _vertices(quiver: Quiver, symbols: tuple[str, ...]) -> list[VertexContext]:

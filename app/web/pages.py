@@ -16,6 +16,8 @@ from app.desk.reading import draft_of, read_draft
 from app.desk.store import Revision, Store
 from app.errors import PolewrightError, Refused
 from app.existence.check import Check, check
+from app.existence.check_ramified import check_ramified
+from app.existence.verdict import FuchsDefect, Verdict
 from app.findings.findings import Findings, examine_cached
 from app.local.document import read_document
 from app.local.writer import canonical_text
@@ -127,7 +129,7 @@ async def certificate(request: Request) -> Response:
         checked: list[tuple[str, tuple[Check, ...]]] = []
         if findings is not None:
             pairs = (("Irreducible system", findings.additive), ("Irreducible monodromy", findings.multiplicative))
-            checked = [(question, check(verdict)) for question, verdict in pairs if verdict is not None]
+            checked = [(question, _claims(findings, verdict)) for question, verdict in pairs if verdict is not None]
         return render("certificate.html", checked=checked, large=is_large(request))
 
     return HTMLResponse(await request.app.state.work.run(work))
@@ -137,6 +139,17 @@ async def certificate(request: Request) -> Response:
 async def help_page(request: Request) -> Response:
     """What every entry of the page means."""
     return page("help.html", large=is_large(request))
+
+
+def _claims(findings: Findings, verdict: Verdict) -> tuple[Check, ...]:
+    """The claims of a verdict's certificate, worked out again."""
+    if not findings.problem.ramified:
+        return check(verdict)
+    if verdict.ramified is not None:
+        return check_ramified(findings.problem, verdict.ramified, verdict.exists)
+    if isinstance(verdict.certificate, FuchsDefect):
+        return check_ramified(findings.problem, verdict.certificate, verdict.exists)
+    return ()
 
 
 def _findings(store: Store, revision: Revision) -> tuple[Findings | None, bool]:

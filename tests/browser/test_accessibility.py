@@ -74,3 +74,14 @@ def test_pages_that_the_desk_leads_to(desk_at: Callable[..., Desk], shared_serve
     for details in desk.page.locator("details").all():
         details.evaluate("element => { element.open = true }")
     assert violations(desk) == []
+
+
+@pytest.mark.parametrize("shorthand", ["(1)_3/2", "(1)_1/2(1)_0,111", "(1)_1/2,(1)_1/2"])
+def test_ramified_data(desk_at: Callable[..., Desk], shared_server: Running, shorthand: str) -> None:
+    desk = desk_at(shared_server, bypass_csp=True).open()
+    desk.read_type(shorthand)
+    assert desk.page.locator(".newton svg").count() >= 1
+    assert desk.page.locator("#diagram .vertex").count() >= 1
+    for details in desk.page.locator("details").all():
+        details.evaluate("element => { element.open = true }")
+    assert violations(desk) == []
