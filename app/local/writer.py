@@ -42,14 +42,14 @@ def _position(problem: Problem, position: Position) -> str:
 
 def _block(problem: Problem, place: tuple[int, int], block: Block) -> BlockDocument:
     symbols = problem.symbols
-    exponent: dict[str, str | int] = {
-        str(power): write_number(value, symbols) for power, value in block.exponent.terms
-    }
+    exponent: dict[str, str | int] = {str(power): write_number(value, symbols) for power, value in block.exponent.terms}
     forced = problem.forced
     chosen = forced.eigenvalue if forced is not None and (forced.pole, forced.block) == place else None
     eigenvalues: list[EigenvalueDocument] = [
-        {"value": "*" if number == chosen else write_number(eigenvalue.value, symbols),
-         "jordan": list(eigenvalue.jordan)}
+        {
+            "value": "*" if number == chosen else write_number(eigenvalue.value, symbols),
+            "jordan": list(eigenvalue.jordan),
+        }
         for number, eigenvalue in enumerate(block.residue)
     ]
     if problem.reading == "local_monodromy":
