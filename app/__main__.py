@@ -33,6 +33,7 @@ _EXAMPLES = """examples:
   python -m app                                    serve the page on 127.0.0.1 and open it
   python -m app examine problem.json               findings as text
   python -m app examine --type 21,111,111          the same for generic eigenvalues of these multiplicities
+  python -m app examine --walls --type 21,111,111  with the walls between eigenvalues where the verdict changes
   python -m app examine --json - < problem.json    findings as JSON
   python -m app examine many.jsonl                 one document a line in, one result a line out
   python -m app construct --type 21,111,111        matrices, exact where possible, with their checks
@@ -79,6 +80,7 @@ def _parser() -> argparse.ArgumentParser:
     examining.add_argument("file", nargs="?", default="-", metavar="FILE", help="document or JSON Lines; - reads input")
     examining.add_argument("--type", dest="shorthand", metavar="SHORTHAND", help="a type, for example 21,111,111")
     examining.add_argument("--json", action="store_true", help="findings as JSON")
+    examining.add_argument("--walls", action="store_true", help="walls and closures too (they take longer)")
     examining.set_defaults(run=_examine)
 
     building = commands.add_parser("construct", help="a connection for a problem, verified")
@@ -116,16 +118,16 @@ def _examine(given: argparse.Namespace) -> int:
     if given.shorthand is not None:
         from app.local.shorthand import problem_from_shorthand
 
-        return _print_one(problem_from_shorthand(given.shorthand), as_json=given.json)
+        return _print_one(problem_from_shorthand(given.shorthand), given)
     with _opened(given.file) as stream:
         first, second = _two_lines(stream)
         if second and _is_object(first):
-            return _print_lines(_chained((first, second), stream))
+            return _print_lines(_chained((first, second), stream), given)
         whole = first + second + _rest_of(stream, len(first) + len(second))
-    return _examine_whole(whole, as_json=given.json)
+    return _examine_whole(whole, given)
 
 
-def _examine_whole(whole: bytes, *, as_json: bool) -> int:
+def _examine_whole(whole: bytes, given: argparse.Namespace) -> int:
     """One document, or JSON Lines when the whole is no JSON but a line of it is an object."""
     from app.local.document import read_document
 
@@ -134,21 +136,25 @@ def _examine_whole(whole: bytes, *, as_json: bool) -> int:
     except (Malformed, TooLarge):
         lines = [line for line in whole.splitlines(keepends=True) if line.strip()]
         if len(lines) > 1 and any(_is_object(line) for line in lines):
-            return _print_lines(iter(lines))
+            return _print_lines(iter(lines), given)
         raise
-    return _print_one(problem, as_json=as_json)
+    return _print_one(problem, given)
 
 
-def _print_one(problem: "Problem", *, as_json: bool) -> int:
+def _print_one(problem: "Problem", given: argparse.Namespace) -> int:
     from app.findings.findings import examine
     from app.findings.text import findings_text
 
     findings = examine(problem)
-    print(_as_json(findings, indent=2) if as_json else findings_text(findings).rstrip("\n"))
+    print(_as_json(findings, given, indent=2) if given.json else findings_text(findings).rstrip("\n"))
+    if given.walls and not given.json:
+        from app.findings.walls_json import walls_text
+
+        print(walls_text(problem).rstrip("\n"))
     return DONE
 
 
-def _print_lines(lines: Iterator[bytes]) -> int:
+def _print_lines(lines: Iterator[bytes], given: argparse.Namespace) -> int:
     """One JSON result for every line that is not blank; a refused line does not end the run."""
     from app.findings.findings import examine
     from app.local.document import read_document
@@ -158,7 +164,7 @@ def _print_lines(lines: Iterator[bytes]) -> int:
         if not line.strip():
             continue
         try:
-            result = _as_json(examine(read_document(line)))
+            result = _as_json(examine(read_document(line)), given)
         except PolewrightError as error:
             result = json.dumps({"error": error.as_json()}, ensure_ascii=False)
             status = REFUSED
@@ -166,8 +172,13 @@ def _print_lines(lines: Iterator[bytes]) -> int:
     return status
 
 
-def _as_json(findings: "Findings", indent: int | None = None) -> str:
-    return json.dumps(findings.as_json(), ensure_ascii=False, indent=indent)
+def _as_json(findings: "Findings", given: argparse.Namespace, indent: int | None = None) -> str:
+    found = findings.as_json()
+    if given.walls:
+        from app.findings.walls_json import walls_json
+
+        found["walls"] = walls_json(findings.problem)["walls"]
+    return json.dumps(found, ensure_ascii=False, indent=indent)
 
 
 def _construct(given: argparse.Namespace) -> int:

@@ -156,6 +156,16 @@ class ResonanceJson(TypedDict):
     difference: int
 
 
+class WallJson(TypedDict):
+    """A wall: the equation that defines it, its root, what happens there, the present value, whether that is 0."""
+
+    equation: str
+    vector: list[int]
+    criterion: str
+    value: str
+    holds: bool
+
+
 class DescentJson(TypedDict):
     """A step of the descent."""
 
@@ -191,7 +201,7 @@ class FindingsJson(TypedDict):
     additive: VerdictJson | None
     multiplicative: VerdictJson | None
     resonances: list[ResonanceJson]
-    walls: None
+    walls: list[WallJson] | None
     descent: list[DescentJson]
     families: list[FamilyJson]
 

@@ -5,17 +5,13 @@ POST /api/walls     a problem document, or {"type": SHORTHAND} → walls of its 
 POST /api/closures  the same → smaller classes in the closures, with their verdicts
 """
 
-import json
 from typing import Any
 
 from fastapi import APIRouter, Request
 from starlette.responses import JSONResponse, Response
 
 from app.errors import Place, Refused
-from app.exact.number import write_number
-from app.existence.closures import closures
-from app.existence.verdict import Verdict
-from app.existence.walls import walls
+from app.findings.walls_json import closures_json, walls_json
 from app.local.document import parse_json, problem_from_json
 from app.local.writer import document
 from app.web.api import problem_in
@@ -64,45 +60,8 @@ def _operated(body: bytes) -> dict[str, Any]:
 
 
 def _walls(body: bytes) -> dict[str, Any]:
-    problem = problem_in(body)
-    found = walls(problem)
-    return {
-        "generic": found.generic.exists,
-        "complete": found.complete,
-        "proved": found.proved,
-        "walls": [
-            {
-                "equation": wall.equation,
-                "vector": list(wall.vector),
-                "criterion": wall.criterion,
-                "value": write_number(wall.value, problem.symbols),
-                "holds": wall.holds,
-            }
-            for wall in found.walls
-        ],
-    }
+    return walls_json(problem_in(body))
 
 
 def _closures(body: bytes) -> dict[str, Any]:
-    found = closures(problem_in(body))
-    return {
-        "complete": found.complete,
-        "rows": [
-            {
-                "changes": [
-                    {"at": f"/poles/{c.pole}/blocks/{c.block}/residue/{c.eigenvalue}/jordan", "jordan": list(c.jordan)}
-                    for c in row.changes
-                ],
-                "codimension": row.codimension,
-                "dimension": row.dimension,
-                "additive": _exists(row.additive),
-                "multiplicative": _exists(row.multiplicative),
-                "problem": json.loads(json.dumps(document(row.problem))),
-            }
-            for row in found.rows
-        ],
-    }
-
-
-def _exists(verdict: Verdict | None) -> dict[str, Any] | None:
-    return None if verdict is None else {"exists": verdict.exists, "status": verdict.status, "reason": verdict.reason}
+    return closures_json(problem_in(body))

@@ -111,3 +111,14 @@ def test_check_accepts_own_findings_and_finds_spoiled_ones() -> None:
 def test_version_and_schema() -> None:
     assert run("--version").stdout.strip() == PROGRAM
     assert json.loads(run("schema", "problem").stdout)["$schema"].startswith("https://json-schema.org/")
+
+
+def test_walls_on_request() -> None:
+    """Nine walls for the hypergeometric tuple of order 3: the conditions on a_i + b_j."""
+    text = run("examine", "--walls", "--type", "21,111,111").stdout
+    assert "Walls (for generic eigenvalues an irreducible system exists)" in text and "  9. " in text
+    found = json.loads(run("examine", "--walls", "--json", "--type", "21,111,111").stdout)
+    assert len(found["walls"]) == 9
+    assert json.loads(run("examine", "--json", "--type", "21,111,111").stdout)["walls"] is None
+    refused = run("examine", "--walls", "--json", "--type", "(1)_3/2")
+    assert refused.returncode == 1 and "Traceback" not in refused.stderr
