@@ -4,7 +4,9 @@ Called by ``web/``.  It places vertices and writes markup with ids; it refuses t
 desks.
 
     geometry.py    the placed diagram, as frozen values
+    folding.py     what is drawn one by one, and what only counted
     ring.py        the order of core vertices on their ring
+    labels.py      where parameters are written
     layout.py      quiver → placed diagram
     svg.py         placed diagram → SVG
     orbit_layout.py  diagram of ramified data → placed picture, with loops and negative edges

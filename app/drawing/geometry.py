@@ -8,10 +8,16 @@ from typing import Literal
 
 Point = tuple[float, float]
 
+CORNER = 1.1
+"""How much farther than its radius the corners of a core vertex reach."""
+
 
 @dataclass(frozen=True)
 class Node:
-    """A drawn vertex of the quiver: where it is, how large, and what it says."""
+    """A drawn vertex of the quiver: where it is, how large, and what it says.
+
+    ``parameter`` is written beside the vertex and is shortened to fit there, ``name`` says all about the vertex.
+    """
 
     id: str
     role: Literal["core", "leg"]
@@ -29,13 +35,14 @@ class Link:
     """A drawn bundle of edges between two places: the control point of each curve, and how many edges it stands for.
 
     Straight edges have their control point on the line.  ``count`` differs from the number of curves when many edges
-    are drawn as one.
+    are drawn as one.  ``bundled`` marks the edges between vertices of which some are not drawn one by one.
     """
 
     start: Point
     end: Point
     controls: tuple[Point, ...]
     count: int
+    bundled: bool = False
 
 
 @dataclass(frozen=True)

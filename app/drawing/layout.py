@@ -1,212 +1,233 @@
 """Quiver → placed diagram.
 
-A single core vertex stands in the middle and its legs run outwards in all directions: a star.  Several core vertices
-stand on a ring, in an order with few crossings, together with the heads of the legs that hang on all of them; every leg
-runs straight outwards from its place on the ring, so legs never cross anything.  Places depend on the structure of the
-quiver alone, never on dimensions: a diagram stays put while its numbers change.
-
-Long legs and large groups of core vertices are folded: the first few, a mark with the number left out, the last.
+Where all edges between places go through one vertex, that vertex stands in the middle and its legs run outwards in all
+directions: a star.  Otherwise core vertices stand on a ring, in an order with few crossings, together with the heads of
+the legs that hang on all of them; every leg runs straight outwards from its place on the ring, so legs never cross
+anything.  Places depend on the structure of the quiver alone, never on dimensions: a diagram stays put while its
+numbers change.  Sizes of vertices follow the dimensions, within the room that every vertex has.
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
-from math import cos, hypot, pi, sin
-from typing import Literal
+from dataclasses import replace
+from math import cos, hypot, log, pi, sin
 
-from app.drawing.geometry import Diagram, Fold, Link, Node, Point
-from app.drawing.ring import ring_order
+from app.drawing.folding import (
+    LEG_SHOWN,
+    SMALL_LEG_SHOWN,
+    Arm,
+    Place,
+    arms_of,
+    ring_places,
+    shown_of_leg,
+    star_places,
+    words_for_mark,
+)
+from app.drawing.geometry import CORNER, Diagram, Fold, Link, Node, Point
+from app.drawing.labels import ROOM, shortened, with_labels
+from app.drawing.ring import clearance, ring_order
 from app.exact.number import write_number
+from app.exact.value import Value
 from app.roots.quiver import Quiver, Vertex
 
-LEG_SHOWN = 6
-GROUP_SHOWN = 10
-_FIRST_OF_LEG = 3
-_CORE_RADIUS = 19.0
-_LEG_RADIUS = 15.0
+CORE_ROOM = 21.0
+LEG_ROOM = 16.0
+"""The largest radius of a core vertex and of a leg vertex."""
+_SMALLEST = 0.74
+_LARGE_DIMENSION = 12
+_APART = 8.0
 _STEP = 58.0
+_SMALL_STEP = 44.0
+_RING_STEP = 66.0
+_LARGEST_RING = 320.0
 _BOW = 26.0
 _MOST_CURVES = 5
-_MARGIN = 30.0
+_MARGIN = 36.0
+_MARGIN_ASIDE = 48.0
+_SMALL_MARGIN = 26.0
 _MOST_TERMS = 40
+_LONGEST_NAME = 160
 
 
-@dataclass(frozen=True)
-class _Ray:
-    """Where a leg runs: from a point, in a direction."""
-
-    start: Point
-    direction: Point
-
-
-def place(quiver: Quiver, dimension: Sequence[int] | None = None) -> Diagram:
+def place(
+    quiver: Quiver, dimension: Sequence[int] | None = None, *, small: bool = False, symbols: Sequence[str] = ()
+) -> Diagram:
     """Place the vertices of a quiver; ``dimension`` replaces the dimensions written in them.
 
-    Cost: linear in what is drawn; at most six places on a ring are ordered by trying all orders, once for every shape.
+    ``small`` is for pictures of the size of a thumb: short legs, no labels, every vertex as large as it may be.
+    ``symbols`` gives the order of the symbols in parameters.  Cost: the number of edges, and what is drawn; at most six
+    places on a ring are ordered by trying all orders, once for every shape.
     """
-    return _Placer(quiver, quiver.dimension if dimension is None else dimension).diagram()
+    return _Placer(quiver, quiver.dimension if dimension is None else dimension, small, symbols).diagram()
 
 
 class _Placer:
     """The work of placing one quiver."""
 
-    def __init__(self, quiver: Quiver, dimension: Sequence[int]) -> None:
+    def __init__(self, quiver: Quiver, dimension: Sequence[int], small: bool, symbols: Sequence[str]) -> None:
         self.quiver = quiver
         self.dimension = dimension
-        self.nodes: list[Node] = []
+        self.small = small
+        self.symbols = symbols
+        self.step = _SMALL_STEP if small else _STEP
+        self.nodes: dict[int, Node] = {}
         self.links: list[Link] = []
         self.folds: list[Fold] = []
-        self.places: dict[int, Point] = {}
-        self.legs: dict[tuple[int, int], list[int]] = {}
-        groups: dict[int, list[int]] = {}
-        for v, vertex in enumerate(quiver.vertices):
-            if vertex.role == "core":
-                groups.setdefault(vertex.pole, []).append(v)
-            else:
-                self.legs.setdefault((vertex.pole, vertex.block), []).append(v)
-        self.groups = list(groups.values())
-        self.own = {
-            v: self.legs[quiver.vertices[v].pole, quiver.vertices[v].block]
-            for group in self.groups
-            for v in group
-            if (quiver.vertices[v].pole, quiver.vertices[v].block) in self.legs
-        }
-        owned = [leg[0] for leg in self.own.values()]
-        self.shared = [leg for leg in self.legs.values() if leg[0] not in owned]
 
     def diagram(self) -> Diagram:
-        if sum(len(group) for group in self.groups) == 1:
-            self._star()
+        groups = arms_of(self.quiver)
+        places = ring_places(groups)
+        counts = self._edges(places)
+        middle = self._middle(places, counts)
+        if middle is None:
+            self._ring(places, counts)
         else:
-            self._ring()
+            arms = [arm for group in groups for arm in group]
+            self._star(middle, arms)
+        box = self._box()
         # in the quiver's order, so that the keyboard walks through the vertices as the table lists them
-        rank = {vertex.id: v for v, vertex in enumerate(self.quiver.vertices)}
-        nodes = tuple(sorted(self.nodes, key=lambda node: rank[node.id]))
-        return Diagram(nodes, tuple(self.links), tuple(self.folds), self._box())
+        nodes = tuple(self.nodes[v] for v in sorted(self.nodes))
+        if not self.small:
+            nodes = with_labels(nodes, self.links, self.folds, box)
+        return Diagram(nodes, tuple(self.links), tuple(self.folds), box)
 
-    # --- a star
+    def _edges(self, places: Sequence[Place]) -> dict[tuple[int, int], int]:
+        """Numbers of edges between different places, by their numbers, the quiver's smaller vertex first."""
+        at = [-1] * len(self.quiver.vertices)
+        for k, slot in enumerate(places):
+            for arm in slot.arms:
+                at[arm[0]] = k
+        counts: dict[tuple[int, int], int] = {}
+        for i, j, count in self.quiver.edges:
+            a, b = at[i], at[j]
+            if a >= 0 and b >= 0 and a != b:
+                counts[a, b] = counts.get((a, b), 0) + count
+        return counts
 
-    def _star(self) -> None:
-        ((core,),) = self.groups
-        self._node(core, (0.0, 0.0), (0.0, -1.0))
-        legs = list(self.legs.values())
-        for k, leg in enumerate(legs):
-            direction = _direction(k, len(legs), start=pi)
-            self._leg(leg, _Ray((0.0, 0.0), direction), _spread(len(legs)))
+    def _middle(self, places: Sequence[Place], counts: dict[tuple[int, int], int]) -> int | None:
+        """The vertex through which all edges between places go, if every other place has such an edge.
 
-    # --- a ring
+        Two core vertices face each other, and neither is in the middle.
+        """
+        heads = [slot.arms[0][0] for slot in places]
+        if len(counts) != len(places) - 1:
+            return None
+        if len(places) == 2 and self.quiver.vertices[heads[1]].role == "core":
+            return None
+        for k, slot in enumerate(places):
+            if not slot.is_mark and all(k in pair for pair in counts):
+                return heads[k]
+        return None
 
-    def _ring(self) -> None:
-        members, hidden = self._members()
-        index = {v: k for k, v in enumerate(members)}
-        inside = [edge for edge in self.quiver.edges if edge[0] in index and edge[1] in index]
-        order = ring_order(len(members), tuple((index[a], index[b]) for a, b, _ in inside))
-        size = len(members) + len(hidden)
-        radius = max(64.0, size * (2 * _CORE_RADIUS + 26.0) / (2 * pi))
-        if len(members) == 2 and not hidden:
-            radius = 52.0
-        heads = {leg[0]: leg for leg in self.shared}
+    def _star(self, middle: int, arms: Sequence[Arm]) -> None:
+        """A vertex in the middle and all other arms, its own leg among them, round it."""
+        own = next(arm for arm in arms if arm[0] == middle)
+        around = [arm for arm in arms if arm[0] != middle]
+        if len(own) > 1:
+            # a core vertex' own leg comes where its pole is in the list; the rest of a leg comes where its head was
+            key = self.quiver.vertices[own[1]]
+            position = sum(self._pole(arm) < (key.pole, key.block) for arm in around)
+            around.insert(position, own[1:])
+        self._node(middle, (0.0, 0.0))
+        places = star_places(around)
+        counts = self._edges([Place(((middle,),)), *places])
+        room = max((_room(self.quiver.vertices[p.arms[0][0]]) for p in places), default=0.0)
+        reach = self.step + (CORE_ROOM - LEG_ROOM if room > LEG_ROOM else 0.0)
+        if len(places) > 2:
+            reach = max(reach, (room * CORNER + _APART / 2) / sin(pi / len(places)))
+        for k, slot in enumerate(places):
+            direction = _direction(k, len(places), start=pi)
+            point = (reach * direction[0], reach * direction[1])
+            count = counts.get((0, k + 1), 0) + counts.get((k + 1, 0), 0)
+            self._join((0.0, 0.0), point, count, bundled=slot.is_mark)
+            self._place(slot, point, direction)
+
+    def _pole(self, arm: Arm) -> tuple[int, int]:
+        vertex = self.quiver.vertices[arm[0]]
+        return (vertex.pole, vertex.block)
+
+    def _ring(self, places: Sequence[Place], counts: dict[tuple[int, int], int]) -> None:
+        size = len(places)
+        order = ring_order(size, tuple(counts))
+        radius = max(64.0, size * _RING_STEP / (2 * pi))
+        clear = CORE_ROOM * CORNER + _APART / 2
+        radius = min(max(radius, clear / clearance(order, tuple(counts))), max(radius, _LARGEST_RING))
+        if size == 2:
+            radius = 54.0
         start = pi if size <= 2 else -pi / 2 if size % 2 else -pi / 2 - pi / size
-        angles = self._angles(order, members, hidden)
-        for v, k in angles.items():
+        points: dict[int, Point] = {}
+        for k, slot in enumerate(order):
             direction = _direction(k, size, start)
-            point = (radius * direction[0], radius * direction[1])
-            self.places[v] = point
-            self._node(v, point, direction)
-            leg = heads[v][1:] if v in heads else self.own.get(v, [])
-            self._leg(leg, _Ray(point, direction), 0.0)
-        for k, (count, name) in hidden.items():
-            direction = _direction(k, size, start)
-            self.folds.append(Fold((radius * direction[0], radius * direction[1]), count, name))
-        for a, b, count in inside:
-            self.links.append(bundle(self.places[a], self.places[b], count))
-
-    def _members(self) -> tuple[list[int], dict[int, tuple[int, str]]]:
-        """Vertices on the ring in the given order, and marks for those left out: place → (number, in words)."""
-        members: list[int] = []
-        hidden: dict[int, tuple[int, str]] = {}
-        heads = [leg[0] for leg in self.shared]
-        for group in [*self.groups, heads] if heads else self.groups:
-            if len(group) <= GROUP_SHOWN:
-                members += group
-                continue
-            shown = group[: GROUP_SHOWN - 2]
-            members += shown
-            count = len(group) - len(shown) - 1
-            hidden[len(members) + len(hidden)] = (count, f"{count} more vertices of this kind are not drawn")
-            members.append(group[-1])
-        return members, hidden
-
-    def _angles(self, order: Sequence[int], members: list[int], hidden: dict[int, tuple[int, str]]) -> dict[int, int]:
-        """Place number of every member; marks keep their own places in between."""
-        free = [k for k in range(len(members) + len(hidden)) if k not in hidden]
-        return {members[member]: k for member, k in zip(order, free, strict=True)}
+            points[slot] = (radius * direction[0], radius * direction[1])
+            self._place(places[slot], points[slot], direction)
+        for (a, b), count in counts.items():
+            self._join(points[a], points[b], count, bundled=places[a].is_mark or places[b].is_mark)
 
     # --- parts
 
-    def _leg(self, leg: list[int], ray: _Ray, extra: float) -> None:
-        """A leg outwards along its ray, folded when it is long."""
-        shown: list[int | None] = list(leg)
-        if len(leg) > LEG_SHOWN:
-            shown = [*leg[:_FIRST_OF_LEG], None, leg[-1]]
-        previous = ray.start
-        for k, v in enumerate(shown):
-            reach = _STEP * (k + 1) + extra
-            point = (ray.start[0] + reach * ray.direction[0], ray.start[1] + reach * ray.direction[1])
-            self.links.append(Link(previous, point, (_middle(previous, point),), 1))
-            if v is None:
-                hidden = len(leg) - _FIRST_OF_LEG - 1
-                self.folds.append(Fold(point, hidden, f"{hidden} more vertices of this leg are not drawn"))
-            else:
-                self._node(v, point, ray.direction)
-            previous = point
+    def _join(self, start: Point, end: Point, count: int, *, bundled: bool) -> None:
+        if bundled:
+            self.links.append(Link(start, end, (_middle(start, end),), count, bundled=True))
+        else:
+            self.links.append(bundle(start, end, count))
 
-    def _node(self, v: int, point: Point, direction: Point) -> None:
+    def _place(self, slot: Place, point: Point, direction: Point) -> None:
+        """An arm outwards from its place, its leg folded where it is long; or a mark."""
+        if slot.is_mark:
+            hidden = sum(len(arm) for arm in slot.arms)
+            self.folds.append(Fold(point, hidden, words_for_mark(self.quiver, slot.arms)))
+            return
+        (arm,) = slot.arms
+        most = SMALL_LEG_SHOWN if self.small else LEG_SHOWN
+        body = arm[1:] if self.quiver.vertices[arm[0]].role == "core" else arm
+        shown = [*arm[: len(arm) - len(body)], *shown_of_leg(body, most)]
+        hidden = len(arm) - sum(v is not None for v in shown)
+        previous = point
+        for k, v in enumerate(shown):
+            at = (point[0] + k * self.step * direction[0], point[1] + k * self.step * direction[1])
+            if k:
+                self.links.append(Link(previous, at, (_middle(previous, at),), 1))
+            if v is None:
+                self.folds.append(Fold(at, hidden, f"{hidden} more vertices of this leg are not drawn"))
+            else:
+                self._node(v, at)
+            previous = at
+
+    def _node(self, v: int, point: Point) -> None:
         vertex = self.quiver.vertices[v]
-        radius = _CORE_RADIUS if vertex.role == "core" else _LEG_RADIUS
-        terms = len(vertex.parameter.terms)
-        parameter = write_number(vertex.parameter) if terms <= _MOST_TERMS else f"a sum of {terms} terms"
-        # the parameter stands beside the vertex, across the direction of the leg, where no edge runs
-        across = (-direction[1], direction[0]) if abs(direction[0]) > 0.3 else (1.0, 0.0)
-        if across[1] > 0.5:
-            across = (-across[0], -across[1])
-        label = (point[0] + across[0] * (radius + 9), point[1] + across[1] * (radius + 9) + 4)
-        anchor: Literal["start", "middle", "end"] = "middle"
-        if abs(across[0]) > 0.5:
-            anchor = "start" if across[0] > 0 else "end"
-        name = vertex_name(replace(vertex, dimension=self.dimension[v]), parameter)
-        self.nodes.append(
-            Node(vertex.id, vertex.role, point, radius, self.dimension[v], parameter, name, label, anchor)
+        dimension = self.dimension[v]
+        radius = _room(vertex) if self.small else radius_of(vertex, dimension)
+        parameter = "" if self.small else _parameter(vertex.parameter, self.symbols)
+        name = vertex_name(replace(vertex, dimension=dimension), parameter)
+        self.nodes[v] = Node(
+            vertex.id, vertex.role, point, radius, dimension, shortened(parameter), name, point, "middle"
         )
 
     def _box(self) -> tuple[float, float, float, float]:
-        """The box of all that is drawn, parameters' labels included up to a length."""
-        points = [node.at for node in self.nodes] + [fold.at for fold in self.folds]
+        """The box of all that is drawn, with room for the label of any vertex."""
+        points = [node.at for node in self.nodes.values()] + [fold.at for fold in self.folds]
         points += [control for link in self.links for control in link.controls]
-        left, right = min(x for x, _ in points) - _MARGIN, max(x for x, _ in points) + _MARGIN
-        top, bottom = min(y for _, y in points) - _MARGIN, max(y for _, y in points) + _MARGIN
+        margin = _SMALL_MARGIN if self.small else _MARGIN
+        aside = margin if self.small else _MARGIN_ASIDE
+        left, right = min(x for x, _ in points) - aside, max(x for x, _ in points) + aside
+        top, bottom = min(y for _, y in points) - margin, max(y for _, y in points) + margin
+        if not self.small:
+            lack = max(0.0, ROOM + 4 - (right - left)) / 2
+            left, right = left - lack, right + lack
         return (left, top, right - left, bottom - top)
+
+
+def radius_of(vertex: Vertex, dimension: int) -> float:
+    """The size of a vertex: it grows with the logarithm of the dimension up to the room that the vertex has."""
+    grown = min(1.0, log(max(dimension, 1)) / log(_LARGE_DIMENSION))
+    return _room(vertex) * (_SMALLEST + (1 - _SMALLEST) * grown)
 
 
 def vertex_name(vertex: Vertex, parameter: str) -> str:
     """What a vertex is, for those who hear it: poles, blocks and places are counted from one."""
     where = f"pole {vertex.pole + 1}, block {vertex.block + 1}"
     kind = "core vertex" if vertex.role == "core" else f"leg vertex {vertex.leg}"
-    return f"{kind} of {where}: dimension {vertex.dimension}, parameter {parameter}"
-
-
-def _direction(k: int, size: int, start: float) -> Point:
-    """The k-th of ``size`` equally spaced directions, clockwise from ``start``."""
-    angle = start + 2 * pi * k / size
-    return (round(cos(angle), 6), round(sin(angle), 6))
-
-
-def _spread(legs: int) -> float:
-    """How far the first vertices move out so that neighbouring legs keep a distance."""
-    return max(0.0, legs * (2 * _LEG_RADIUS + 8.0) / (2 * pi) - _STEP)
-
-
-def _middle(a: Point, b: Point) -> Point:
-    return ((a[0] + b[0]) / 2, (a[1] + b[1]) / 2)
+    said = f", parameter {parameter}" if parameter else ""
+    return f"{kind} of {where}: dimension {vertex.dimension}{said}"
 
 
 def bundle(a: Point, b: Point, count: int) -> Link:
@@ -218,3 +239,26 @@ def bundle(a: Point, b: Point, count: int) -> Link:
     offsets = [(k - (drawn - 1) / 2) * _BOW for k in range(drawn)]
     controls = tuple((middle[0] + across[0] * o, middle[1] + across[1] * o) for o in offsets)
     return Link(a, b, controls, count)
+
+
+def _room(vertex: Vertex) -> float:
+    return CORE_ROOM if vertex.role == "core" else LEG_ROOM
+
+
+def _parameter(value: Value, symbols: Sequence[str]) -> str:
+    """The parameter as it is said: whole, or what it is like where it is long."""
+    terms = len(value.terms)
+    text = write_number(value, symbols) if terms <= _MOST_TERMS else ""
+    if text and len(text) <= _LONGEST_NAME:
+        return text
+    return f"a sum of {terms} terms" if terms > 1 else f"{text[:_LONGEST_NAME]}…"
+
+
+def _direction(k: int, size: int, start: float) -> Point:
+    """The k-th of ``size`` equally spaced directions, clockwise from ``start``."""
+    angle = start + 2 * pi * k / size
+    return (round(cos(angle), 6), round(sin(angle), 6))
+
+
+def _middle(a: Point, b: Point) -> Point:
+    return ((a[0] + b[0]) / 2, (a[1] + b[1]) / 2)

@@ -72,7 +72,8 @@ def place_orbits(diagram: OrbitDiagram) -> OrbitPicture:
         if diagram.vertices[i].id in at and diagram.vertices[j].id in at
     ]
     marks = {fold.at for fold in placed.folds}
-    links = [link for link in placed.links if link.start in marks or link.end in marks]
+    # bundles that end at a mark may mix signs: they are left out, the mark itself says how much is not drawn
+    links = [link for link in placed.links if not link.bundled and (link.start in marks or link.end in marks)]
     links += [bundle(a.at, b.at, count) for a, b, count in drawn if count > 0]
     negative = tuple(_negative(a.at, b.at, count) for a, b, count in drawn if count < 0)
     every = [*links, *(signed.link for signed in negative)]

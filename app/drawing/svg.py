@@ -1,8 +1,8 @@
 """Placed diagram → SVG, with classes and ids and without style, links or scripts.
 
-Core vertices are hexagons, leg vertices discs; a vertex of dimension 0 has a broken outline.  Classes:
-``diagram``, ``link``, ``link-count``, ``vertex`` with ``core`` or ``leg`` and ``empty`` or ``selected``, ``shape``,
-``dimension``, ``parameter``, ``fold``, ``fold-count``.
+Core vertices are hexagons, leg vertices discs; a vertex of dimension 0 has a broken outline.  Classes: ``diagram`` with
+``small``; ``link`` with ``bundle``; ``link-count``; ``vertex`` with ``core`` or ``leg`` and with ``empty`` or
+``selected``; in it ``shape``, ``dimension`` with ``wide``, ``parameter``; ``fold`` with ``fold-count``.
 """
 
 from collections.abc import Callable
@@ -11,7 +11,6 @@ from html import escape
 from app.drawing.geometry import Diagram, Node
 from app.drawing.markup import coordinate, fold_markup, head, link_markup, shape
 
-_LONGEST_LABEL = 18
 _FULL = 1.4
 _SMALL = 0.5
 
@@ -43,8 +42,8 @@ def svg(
 
 
 def small_svg(diagram: Diagram, *, title: str, description: str, name: str) -> str:
-    """A small picture of the diagram, with dimensions alone."""
-    parts = [head(diagram.box, title, description, name, alone=False, scale=_SMALL)]
+    """A small picture of a diagram, best placed with ``small``: dimensions alone."""
+    parts = [head(diagram.box, title, description, name, alone=False, scale=_SMALL, kind="diagram small")]
     parts += [link_markup(link) for link in diagram.links]
     parts += [fold_markup(fold) for fold in diagram.folds]
     parts += [_node(node, selected=False, bare=True) for node in diagram.nodes]
@@ -64,9 +63,8 @@ def _node(node: Node, *, selected: bool, bare: bool = False) -> str:
     markup = f'{shape(node)}<text{size} x="{coordinate(x)}" y="{coordinate(y + 5)}">{number}</text>'
     if bare:
         return f'<g class="{classes}">{markup}</g>'
-    label = node.parameter if len(node.parameter) <= _LONGEST_LABEL else node.parameter[: _LONGEST_LABEL - 1] + "…"
     x, y = node.label_at
     place = f'text-anchor="{node.label_anchor}" x="{coordinate(x)}" y="{coordinate(y)}"'
-    text = f'<text class="parameter" {place}>{escape(label)}</text>'
+    text = f'<text class="parameter" {place}>{escape(node.parameter)}</text>'
     title = f"<title>{escape(node.name)}</title>"
     return f'<g class="{classes}" data-vertex="{escape(node.id)}">{title}{markup}{text}</g>'
