@@ -1,5 +1,7 @@
 """Certificates in words, for the page."""
 
+from collections.abc import Mapping
+
 from app.existence.ramified_certificates import (
     FreeResidue,
     JordanBlocks,
@@ -8,10 +10,22 @@ from app.existence.ramified_certificates import (
     ResidueSum,
     RigidityExcess,
 )
-from app.existence.verdict import Decomposition, FuchsDefect, NotARoot, Reflections, Verdict
+from app.existence.verdict import Criterion, Decomposition, FuchsDefect, NotARoot, Reflections, Verdict
+from app.roots.form import p_of
 from app.roots.quiver import Quiver, Vector
 
 LISTED = 40
+
+CRITERIA: Mapping[Criterion, str] = {
+    "coordinate vector": "a coordinate vector is reached, so α is a real root, and no parameter vanished on the way",
+    "fundamental set": "the reduced vector lies in the fundamental set and none of the exceptions there applies",
+    "fundamental set, several poles": "the criterion for several irregular poles holds for the reduced vector",
+    "enumeration": "all decompositions of the reduced vector were enumerated",
+    "vanishing parameter": "a reflection with parameter 0 was reached; there a part splits off",
+    "multiple of an isotropic root": "the reduced vector is a multiple of an isotropic root",
+    "bridge": "the diagram has a bridge with dimension 1 at both ends, and a side on which the parameters vanish",
+    "affine end": "behind a bridge of the diagram stands a multiple of an isotropic root with vanishing parameters",
+}
 
 
 def certificate_words(verdict: Verdict) -> list[str]:
@@ -23,12 +37,23 @@ def certificate_words(verdict: Verdict) -> list[str]:
         return []
     match certificate:
         case Reflections(steps, reduced, criterion):
-            return [*_steps_words(steps), f"reduced vector: {_vector(quiver, reduced)}", f"criterion: {criterion}"]
+            return [
+                *_steps_words(steps),
+                f"reduced vector: {_vector(quiver, reduced)}",
+                f"criterion: {CRITERIA[criterion]}",
+            ]
         case NotARoot(steps, reduced, failure):
             return [*_steps_words(steps), f"vector reached: {_vector(quiver, reduced)}", f"failure: {failure}"]
         case Decomposition(parts, criterion):
+            vanish = "θ takes integers" if verdict.modulo_integers else "λ vanishes"
             words = [f"{q.multiplicity} × ({_vector(quiver, q.vector)}), p = {q.p}" for q in parts]
-            return ["α is the sum of the positive roots", *words, f"found by: {criterion}"]
+            total = sum(part.multiplicity * part.p for part in parts)
+            return [
+                f"α is the sum of these positive roots, on which {vanish}:",
+                *words,
+                f"their p add up to {total}, which is not less than p(α) = {p_of(quiver, quiver.dimension)}",
+                f"found by: {CRITERIA[criterion]}",
+            ]
         case FuchsDefect():
             return []
 

@@ -1,9 +1,11 @@
 """What the templates are given: frozen values with everything worked out, so that templates only set it out.
 
-desk_context(...)       the whole desk
+DeskContext             the whole desk; its parts follow
+brief_of(...)           the verdicts in a few words
 findings_context(...)   verdicts, figures, certificate, scheme
-diagram_context(...)    the diagram and the list of its vertices
+DiagramContext          see diagram_contexts
 descent_context(...)    the steps of the descent
+leads_context(...)      what goes along to other pages
 """
 
 from collections.abc import Mapping
@@ -11,26 +13,26 @@ from dataclasses import dataclass
 
 from markupsafe import Markup
 
-from app.desk.draft import Draft
+from app.desk.draft import READINGS, Draft
+from app.desk.jordan import write_jordan
 from app.desk.reading import FieldFault
 from app.drawing.layout import place
-from app.drawing.newton import newton_svg
-from app.drawing.orbit_layout import orbit_description, orbit_vertex_name, place_orbits
-from app.drawing.orbit_svg import orbit_svg
-from app.drawing.svg import small_svg, svg
+from app.drawing.svg import small_svg
 from app.exact.number import write_number
 from app.existence.verdict import Verdict
+from app.findings.families import Family
 from app.findings.findings import Findings
 from app.local.formal_type import Block
 from app.local.problem import Problem
 from app.local.writer import canonical_text
 from app.roots.form import p_of
-from app.roots.quiver import Quiver, Vertex
 from app.web.certificate_words import certificate_words
 from app.web.demos import Demo
+from app.web.diagram_contexts import LIST_SHOWN, DiagramContext
 from app.web.mathematics import exponent_mathml, type_mathml, value_mathml
 
-LIST_SHOWN = 8
+ROWS_SHOWN = 12
+RESONANCES_SHOWN = 20
 STEPS_SHOWN = 8
 STEPS_LISTED = 40
 DOCUMENT_CARRIED = 12_000
@@ -42,18 +44,36 @@ STATUS_WORDS = {
     "evidence": "numerical evidence, no proof",
     "open": "not decided",
 }
+BRIEF_WORDS = {
+    "proved": "proved",
+    "refuted": "refuted",
+    "criterion": "criterion, no proof",
+    "evidence": "numerical evidence",
+    "open": "",
+}
 
 
 @dataclass(frozen=True)
 class VerdictContext:
-    """A verdict as sentences, and its certificate in words."""
+    """A verdict as sentences, and its certificate in words; ``status`` is the anchor of its word in the help."""
 
     question: str
     answer: str
     outcome: str
     status: str
+    sure: str
     reason: str
     certificate: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class BriefContext:
+    """A verdict in a few words, for the line that stays in sight."""
+
+    question: str
+    answer: str
+    outcome: str
+    status: str
 
 
 @dataclass(frozen=True)
@@ -65,20 +85,39 @@ class FigureContext:
 
 
 @dataclass(frozen=True)
+class SchemeEigenvalue:
+    """One eigenvalue in the Riemann scheme; ``jordan`` is empty for a single block of size 1."""
+
+    value: Markup
+    jordan: str
+
+
+@dataclass(frozen=True)
 class SchemeEntry:
     """One block in the Riemann scheme: its exponent (None for 0), its eigenvalues, and how many are not listed."""
 
     exponent: Markup | None
-    eigenvalues: tuple[tuple[Markup, str], ...]
+    eigenvalues: tuple[SchemeEigenvalue, ...]
     left_out: int
 
 
 @dataclass(frozen=True)
 class SchemeColumn:
-    """One pole in the Riemann scheme."""
+    """One pole in the Riemann scheme, and how many of its blocks are not listed."""
 
     position: str
     entries: tuple[SchemeEntry, ...]
+    left_out: int
+
+
+@dataclass(frozen=True)
+class ResonanceContext:
+    """Two eigenvalues at a pole (counted from 1) that differ by an integer."""
+
+    pole: int
+    first: Markup
+    second: Markup
+    difference: int
 
 
 @dataclass(frozen=True)
@@ -88,47 +127,10 @@ class FindingsContext:
     verdicts: tuple[VerdictContext, ...]
     figures: tuple[FigureContext, ...]
     warnings: tuple[str, ...]
-    resonances: tuple[tuple[int, Markup, Markup, int], ...]
-    families: tuple[tuple[str, str], ...]
+    resonances: tuple[ResonanceContext, ...]
+    resonances_left_out: int
+    families: tuple[Family, ...]
     scheme: tuple[SchemeColumn, ...]
-    reading: str
-
-
-@dataclass(frozen=True)
-class VertexContext:
-    """One line in the list of vertices; ``left_out`` > 0 marks a line for vertices that are not listed."""
-
-    id: str
-    kind: str
-    stands_for: str
-    dimension: int
-    parameter: Markup
-    left_out: int = 0
-
-
-@dataclass(frozen=True)
-class PolygonContext:
-    """The Newton polygon of an irregular pole: its number, picture, irregularity and slopes in words."""
-
-    pole: int
-    picture: Markup
-    words: str
-
-
-@dataclass(frozen=True)
-class DiagramContext:
-    """The diagram as markup, its vertices, and the Newton polygons of irregular poles.
-
-    ``weighted``: ramified data, whose vertices have weights and no parameters; these stand in their place.
-    ``document`` goes with the buttons that lead to other pages; it is "" for problems too large for those.
-    """
-
-    picture: Markup
-    vertices: tuple[VertexContext, ...]
-    type: Markup
-    document: str
-    weighted: bool = False
-    polygons: tuple[PolygonContext, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -145,11 +147,12 @@ class StepContext:
 
 @dataclass(frozen=True)
 class DescentContext:
-    """The descent: steps with pictures, further steps in words, and how many are not listed."""
+    """The descent: steps with pictures, further steps in words, how many are not listed, and where it ends."""
 
     steps: tuple[StepContext, ...]
     further: tuple[StepContext, ...]
     left_out: int
+    ending: str
 
 
 @dataclass(frozen=True)
@@ -160,6 +163,13 @@ class FormContext:
     structure: str
     revision: int
     faults: Mapping[str, FieldFault]
+    rows_shown: int = ROWS_SHOWN
+
+    @property
+    def shows_more(self) -> bool:
+        """Whether the folded fields stand open: something is wrong there, or not as it is by default."""
+        unusual = bool(self.draft.notes or self.draft.base) or self.draft.reading != READINGS[0]
+        return unusual or any(field in self.faults for field in ("notes", "reading", "base"))
 
     @property
     def open_blocks(self) -> frozenset[str]:
@@ -175,15 +185,29 @@ class FormContext:
 
 @dataclass(frozen=True)
 class StatusContext:
-    """The line above the desk: what happened, whether there is something to undo, and the faults of the whole."""
+    """The line above the desk: the verdicts in brief, what happened, and the faults of the whole."""
 
+    brief: tuple[BriefContext, ...]
     message: str
     notice: str
-    can_undo: bool
-    can_redo: bool
     fault_count: int
     whole: str
     stale: bool
+
+
+@dataclass(frozen=True)
+class HistoryContext:
+    """Whether there is something to undo or redo."""
+
+    can_undo: bool
+    can_redo: bool
+
+
+@dataclass(frozen=True)
+class LeadsContext:
+    """What goes along to the pages of operations, descent and connection: the problem as a document."""
+
+    document: str
 
 
 @dataclass(frozen=True)
@@ -191,50 +215,82 @@ class DeskContext:
     """The whole page.  ``findings`` and what hangs on them are None when no state could ever be read."""
 
     form: FormContext
+    history: HistoryContext
     status: StatusContext
     findings: FindingsContext | None
     diagram: DiagramContext | None
     descent: DescentContext | None
+    leads: LeadsContext | None
     demos: tuple[Demo, ...]
+
+
+@dataclass(frozen=True)
+class Fragment:
+    """A rendered part of the page, and a mark that differs when the part differs."""
+
+    html: Markup
+    mark: str
+
+
+def brief_of(findings: Findings) -> tuple[BriefContext, ...]:
+    """The verdicts in a few words.  Cost: none to speak of."""
+    found = []
+    for question, verdict in _verdicts(findings):
+        answer = {True: "exists", False: "does not exist", None: "not decided"}[verdict.exists]
+        if verdict.exists:
+            size = _family_size(findings, verdict)
+            answer += ", rigid" if size == 0 else f", dimension {size}"
+        found.append(BriefContext(question, answer, _OUTCOMES[verdict.exists], BRIEF_WORDS[verdict.status]))
+    return tuple(found)
 
 
 def findings_context(findings: Findings) -> FindingsContext:
     """The findings set out for the page.  Cost: linear in what is shown."""
     symbols = findings.problem.symbols
-    verdicts = []
-    if findings.additive is not None:
-        verdicts.append(_verdict(findings, findings.additive, "Irreducible system"))
-    if findings.multiplicative is not None:
-        verdicts.append(_verdict(findings, findings.multiplicative, "Irreducible monodromy"))
+    resonances = tuple(
+        ResonanceContext(r.pole + 1, value_mathml(r.first, symbols), value_mathml(r.second, symbols), r.difference)
+        for r in findings.resonances[:RESONANCES_SHOWN]
+    )
     return FindingsContext(
-        verdicts=tuple(verdicts),
+        verdicts=tuple(_verdict(findings, verdict, question) for question, verdict in _verdicts(findings)),
         figures=tuple(_figures(findings)),
         warnings=findings.warnings,
-        resonances=tuple(
-            (r.pole + 1, value_mathml(r.first, symbols), value_mathml(r.second, symbols), r.difference)
-            for r in findings.resonances
-        ),
-        families=tuple((family.name, family.source) for family in findings.families),
+        resonances=resonances,
+        resonances_left_out=len(findings.resonances) - len(resonances),
+        families=findings.families,
         scheme=tuple(_scheme(findings.problem)),
-        reading=findings.problem.reading,
     )
+
+
+_OUTCOMES = {True: "yes", False: "no", None: "open"}
+
+
+def _verdicts(findings: Findings) -> list[tuple[str, Verdict]]:
+    pairs = (("Irreducible system", findings.additive), ("Irreducible monodromy", findings.multiplicative))
+    return [(question, verdict) for question, verdict in pairs if verdict is not None]
+
+
+def _family_size(findings: Findings, verdict: Verdict) -> int:
+    """Dimension of the moduli space of what exists; merged classes have one of their own."""
+    quiver = verdict.quiver
+    return findings.dimension if quiver is None else 2 * p_of(quiver, quiver.dimension)
 
 
 def _verdict(findings: Findings, verdict: Verdict, question: str) -> VerdictContext:
     thing = "irreducible local system" if verdict.modulo_integers else "irreducible system"
     if verdict.exists:
-        quiver = verdict.quiver
-        size = findings.dimension if quiver is None else 2 * p_of(quiver, quiver.dimension)
+        size = _family_size(findings, verdict)
         family = "it is rigid" if size == 0 else f"it moves in a family of dimension {size}"
         answer = f"An {thing} exists; {family}."
+        if verdict.status == "criterion":
+            answer = f"By a criterion that is not proved, an {thing} exists; {family}."
     elif verdict.exists is False:
         answer = f"No {thing} exists."
     else:
         answer = f"Whether an {thing} exists is not decided."
-    outcome = {True: "yes", False: "no", None: "open"}[verdict.exists]
-    return VerdictContext(
-        question, answer, outcome, STATUS_WORDS[verdict.status], verdict.reason, tuple(certificate_words(verdict))
-    )
+    certificate = tuple(certificate_words(verdict))
+    outcome, status = _OUTCOMES[verdict.exists], verdict.status
+    return VerdictContext(question, answer, outcome, status, STATUS_WORDS[status], verdict.reason, certificate)
 
 
 def _figures(findings: Findings) -> list[FigureContext]:
@@ -244,20 +300,32 @@ def _figures(findings: Findings) -> list[FigureContext]:
         holds = Markup("fails by {}").format(value_mathml(findings.fuchs_defect, symbols))
     figures = [
         FigureContext("rank", str(findings.rank)),
-        FigureContext("dimension of the moduli space", str(findings.dimension)),
-        FigureContext("rigidity index", str(findings.rigidity_index)),
+        FigureContext("dimension of the moduli space", _integer(findings.dimension)),
+        FigureContext("rigidity index", _integer(findings.rigidity_index)),
         FigureContext("Fuchs relation", holds),
     ]
-    if findings.quiver is not None:
-        figures.append(FigureContext("type of the quiver", type_mathml(findings.support_type or "")))
-        figures.append(FigureContext("α as a root", f"{findings.root_class or ''}, p = {findings.p}"))
-        figures.append(FigureContext("base pole", str(findings.quiver.base + 1)))
-    for orbit in findings.orbits[: 2 * LIST_SHOWN]:
-        slope = f", slope {orbit.slope}" if orbit.slope else ""
-        figures.append(FigureContext(f"orbit at pole {orbit.pole + 1}", f"dimension {orbit.dimension}{slope}"))
     if findings.solved is not None:
         figures.append(FigureContext("value forced for *", value_mathml(findings.solved.value, symbols)))
+    if findings.quiver is not None:
+        root = "no root" if findings.root_class == "none" else f"{findings.root_class} root"
+        p = "" if findings.p is None else f", p = {_integer(findings.p)}"
+        figures.append(FigureContext("type of the quiver", type_mathml(findings.support_type or "")))
+        figures.append(FigureContext("dimension vector α", root + p))
+        figures.append(FigureContext("base pole", str(findings.quiver.base + 1)))
+    figures.append(FigureContext("dimensions of the orbits", _orbits(findings)))
     return figures
+
+
+def _orbits(findings: Findings) -> str:
+    """The orbits' dimensions in the order of the poles, with the slopes that are not 0."""
+    shown = findings.orbits[: 2 * LIST_SHOWN]
+    words = [f"{orbit.dimension}{f' (slope {orbit.slope})' if orbit.slope else ''}" for orbit in shown]
+    left_out = len(findings.orbits) - len(shown)
+    return ", ".join(words) + (f", and {left_out} more" if left_out else "")
+
+
+def _integer(number: int) -> str:
+    return str(number).replace("-", "−")
 
 
 def _scheme(problem: Problem) -> list[SchemeColumn]:
@@ -266,7 +334,8 @@ def _scheme(problem: Problem) -> list[SchemeColumn]:
         # as text: a heading that is a formula alone has no text for screen readers
         position = "x = ∞" if pole.at.value is None else f"x = {write_number(pole.at.value, problem.symbols)}"
         shown = pole.blocks[: 2 * LIST_SHOWN]
-        columns.append(SchemeColumn(position, tuple(_scheme_entry(problem, block) for block in shown)))
+        entries = tuple(_scheme_entry(problem, block) for block in shown)
+        columns.append(SchemeColumn(position, entries, len(pole.blocks) - len(shown)))
     return columns
 
 
@@ -274,98 +343,26 @@ def _scheme_entry(problem: Problem, block: Block) -> SchemeEntry:
     exponent = None if block.exponent.is_zero else exponent_mathml(block.exponent, problem.symbols)
     shown = block.residue[:LIST_SHOWN]
     eigenvalues = tuple(
-        (value_mathml(e.value, problem.symbols), "" if e.jordan == (1,) else "+".join(map(str, e.jordan)))
+        SchemeEigenvalue(value_mathml(e.value, problem.symbols), "" if e.jordan == (1,) else write_jordan(e.jordan))
         for e in shown
     )
     return SchemeEntry(exponent, eigenvalues, len(block.residue) - len(shown))
 
 
-def diagram_context(findings: Findings, selected: str | None = None) -> DiagramContext:
-    """The diagram and its vertices.  Cost: linear in what is drawn and listed."""
-    quiver = findings.quiver
-    if quiver is None:
-        return _orbit_diagram(findings)
-    symbols = findings.problem.symbols
-    title = f"Quiver of type {findings.support_type}"
-    description = (
-        f"{len(quiver.vertices)} vertices and {len(quiver.edges)} bundles of edges; hexagons are core vertices, discs "
-        "are leg vertices, the number in each is its dimension."
-    )
+def leads_context(findings: Findings) -> LeadsContext | None:
+    """What leads from the desk to other pages; None for ramified data and for problems too large for those.
 
-    def link(vertex_id: str, markup: str) -> str:
-        return f'<a href="#vertex-{vertex_id}" class="vertex-link">{markup}</a>'
-
-    picture = Markup(svg(place(quiver), title=title, description=description, selected=selected, wrap=link))
-    document = canonical_text(findings.problem)
-    if len(document) > DOCUMENT_CARRIED:
-        document = ""
-    vertices = tuple(_vertices(quiver, symbols))
-    type_ = type_mathml(findings.support_type or "")
-    return DiagramContext(picture, vertices, type_, document, polygons=_polygons(findings))
+    Cost: one canonical text.
+    """
+    document = "" if findings.quiver is None else canonical_text(findings.problem)
+    return LeadsContext(document) if 0 < len(document) <= DOCUMENT_CARRIED else None
 
 
-def _orbit_diagram(findings: Findings) -> DiagramContext:
-    """The diagram of ramified data: Galois orbits with weights, negative edges and loops."""
-    diagram = findings.diagram
-    if diagram is None:
-        return DiagramContext(Markup(""), (), Markup(""), "")
-    picture = orbit_svg(
-        place_orbits(diagram),
-        title="Diagram of Galois orbits",
-        description=orbit_description(diagram),
-        wrap=lambda vertex_id, markup: f'<a href="#vertex-{vertex_id}" class="vertex-link">{markup}</a>',
-    )
-    vertices = tuple(
-        VertexContext(v.id, v.role, orbit_vertex_name(v).partition(":")[0], v.dimension, Markup(v.weight))
-        for v in diagram.vertices[: 4 * LIST_SHOWN]
-    )
-    document = canonical_text(findings.problem)
-    carried = document if len(document) <= DOCUMENT_CARRIED else ""
-    return DiagramContext(Markup(picture), vertices, Markup(""), carried, True, _polygons(findings))
-
-
-def _polygons(findings: Findings) -> tuple[PolygonContext, ...]:
-    shown: list[PolygonContext] = []
-    for figure in findings.formal:
-        if figure.irregularity and len(shown) < LIST_SHOWN:
-            title = f"Newton polygon at pole {figure.pole + 1}"
-            picture = newton_svg(figure.newton_polygon, title=title, name=f"newton-{figure.pole}")
-            slopes = ", ".join(f"{slope} on rank {width}" for slope, width in figure.slopes)
-            words = f"irregularity {figure.irregularity}; slopes {slopes}"
-            shown.append(PolygonContext(figure.pole + 1, Markup(picture), words))
-    return tuple(shown)
-
-
-def _vertices(quiver: Quiver, symbols: tuple[str, ...]) -> list[VertexContext]:
-    """Lines for the vertices, long runs of one kind shortened to the first few and the last."""
-    runs: dict[tuple[str, int, int], list[Vertex]] = {}
-    for vertex in quiver.vertices:
-        key = ("core", vertex.pole, 0) if vertex.role == "core" else ("leg", vertex.pole, vertex.block)
-        runs.setdefault(key, []).append(vertex)
-    lines = []
-    for run in runs.values():
-        shown = run if len(run) <= LIST_SHOWN else [*run[: LIST_SHOWN - 2], None, run[-1]]
-        for entry in shown:
-            if entry is None:
-                lines.append(VertexContext("", "", "", 0, Markup(""), len(run) - LIST_SHOWN + 1))
-                continue
-            parameter = value_mathml(entry.parameter, symbols)
-            lines.append(VertexContext(entry.id, entry.role, _meaning(entry), entry.dimension, parameter))
-    return lines
-
-
-def _meaning(vertex: Vertex) -> str:
-    if vertex.role == "core":
-        return f"block {vertex.block + 1} of pole {vertex.pole + 1}"
-    factors = "L − ξ1" if vertex.leg == 1 else f"(L − ξ1)…(L − ξ{vertex.leg})"
-    return f"rank of {factors} at pole {vertex.pole + 1}, block {vertex.block + 1}"
-
-
-def descent_context(findings: Findings) -> DescentContext:
+def descent_context(findings: Findings) -> DescentContext | None:
     """The steps of the descent, the first with pictures.  Cost: a picture for each of the first few steps."""
     quiver = findings.quiver
     if quiver is None:
-        return DescentContext((), (), 0)
+        return None
     symbols = findings.problem.symbols
     steps = []
     for number, step in enumerate(findings.descent[: STEPS_SHOWN + STEPS_LISTED], start=1):
@@ -383,4 +380,12 @@ def descent_context(findings: Findings) -> DescentContext:
         parameter = value_mathml(-step.parameter, symbols)
         steps.append(StepContext(number, picture, step.rank, vertex, parameter, step.operation))
     left_out = max(0, len(findings.descent) - STEPS_SHOWN - STEPS_LISTED)
-    return DescentContext(tuple(steps[:STEPS_SHOWN]), tuple(steps[STEPS_SHOWN:]), left_out)
+    return DescentContext(tuple(steps[:STEPS_SHOWN]), tuple(steps[STEPS_SHOWN:]), left_out, _ending(findings))
+
+
+def _ending(findings: Findings) -> str:
+    rank = findings.descent[-1].rank if findings.descent else findings.rank
+    if rank == 1:
+        return "Rank 1 is the end of every descent." if not findings.descent else "It ends at rank 1."
+    where = "It ends" if findings.descent else "There is no step: the data are"
+    return f"{where} at rank {rank}: no reflection lowers the rank further, or the next one has parameter 0."

@@ -9,12 +9,13 @@ from dataclasses import asdict
 from hashlib import blake2b
 
 from fastapi import APIRouter, Request
+from markupsafe import Markup
 from starlette.responses import HTMLResponse, JSONResponse, RedirectResponse, Response
 
 from app.desk.fields import structure_of, texts_of
 from app.desk.reading import draft_of, read_draft
 from app.desk.store import Revision, Store
-from app.errors import PolewrightError, Refused
+from app.errors import Place, PolewrightError, Refused
 from app.existence.check import Check, check
 from app.existence.check_ramified import check_ramified
 from app.existence.verdict import FuchsDefect, Verdict
@@ -24,18 +25,22 @@ from app.local.writer import canonical_text
 from app.web.contexts import (
     DeskContext,
     FormContext,
+    Fragment,
+    HistoryContext,
     StatusContext,
+    brief_of,
     descent_context,
-    diagram_context,
     findings_context,
+    leads_context,
 )
 from app.web.demos import Demos
+from app.web.diagram_contexts import diagram_context
 from app.web.forms import Outcome, Post, accept, read_post
 from app.web.rendering import page, render
 from app.web.views import LARGE_COOKIE, is_large
 
 router = APIRouter()
-FRAGMENTS = ("status", "data", "diagram", "findings", "descent")
+FRAGMENTS = ("history", "status", "leads", "data", "diagram", "findings", "descent")
 _YEAR = 365 * 24 * 3600
 
 
@@ -44,11 +49,11 @@ async def desk(request: Request) -> Response:
     """The desk as a whole page."""
     state = request.app.state
 
-    def work() -> str:
-        context = _context(state.store, state.demos, state.store.current(), "")
-        return render("desk.html", desk=context, large=is_large(request), document_text="", document_faults=())
+    def work() -> Response:
+        return _desk_page(request, _context(state.store, state.demos, state.store.current(), ""))
 
-    return HTMLResponse(await state.work.run(work))
+    response: Response = await state.work.run(work)
+    return response
 
 
 @router.post("/desk")
@@ -64,8 +69,7 @@ async def edit(request: Request) -> Response:
             return JSONResponse(_changes(state.store, state.demos, post, outcome))
         if not outcome.message:
             return RedirectResponse("/", status_code=303)
-        context = _context(state.store, state.demos, outcome.revision, outcome.message)
-        return page("desk.html", desk=context, large=is_large(request), document_text="", document_faults=())
+        return _desk_page(request, _context(state.store, state.demos, outcome.revision, outcome.message))
 
     response: Response = await state.work.run(work)
     return response
@@ -99,8 +103,7 @@ async def bring_in(request: Request) -> Response:
             problem = read_document(text)
         except PolewrightError as refusal:
             context = _context(store, state.demos, store.current(), refusal.message)
-            names = {"desk": context, "document_text": text, "document_faults": refusal.places}
-            return page("desk.html", status=422, large=is_large(request), **names)
+            return _desk_page(request, context, document=text, faults=refusal.places, status=422)
         with store.turn():
             store.append(draft_of(problem, store.current().draft.next_id), "a document was brought in")
         return RedirectResponse("/", status_code=303)
@@ -141,6 +144,26 @@ async def help_page(request: Request) -> Response:
     return page("help.html", large=is_large(request))
 
 
+def _desk_page(
+    request: Request, context: DeskContext, *, document: str = "", faults: tuple[Place, ...] = (), status: int = 200
+) -> Response:
+    """The whole page; ``document`` is one that could not be brought in, ``faults`` what is wrong with it."""
+    return page(
+        "desk.html",
+        status=status,
+        desk=context,
+        fragments={name: _fragment(name, context) for name in FRAGMENTS},
+        large=is_large(request),
+        document_text=document,
+        document_faults=faults,
+    )
+
+
+def _fragment(name: str, context: DeskContext) -> Fragment:
+    html = render(f"desk_{name}.html", desk=context)
+    return Fragment(Markup(html), blake2b(html.encode(), digest_size=8).hexdigest())
+
+
 def _claims(findings: Findings, verdict: Verdict) -> tuple[Check, ...]:
     """The claims of a verdict's certificate, worked out again."""
     if not findings.problem.ramified:
@@ -169,11 +192,11 @@ def _context(store: Store, demos: Demos, revision: Revision, message: str) -> De
     whole = faults.get("")
     return DeskContext(
         form=FormContext(draft, structure_of(draft), revision.number, faults),
+        history=HistoryContext(revision.can_undo, revision.can_redo),
         status=StatusContext(
+            brief=() if findings is None else brief_of(findings),
             message=message,
             notice=store.notice,
-            can_undo=revision.can_undo,
-            can_redo=revision.can_redo,
             fault_count=len(faults),
             whole="" if whole is None else f"{whole.message} {whole.expected}".strip(),
             stale=stale,
@@ -181,6 +204,7 @@ def _context(store: Store, demos: Demos, revision: Revision, message: str) -> De
         findings=None if findings is None else findings_context(findings),
         diagram=None if findings is None else diagram_context(findings),
         descent=None if findings is None else descent_context(findings),
+        leads=None if findings is None else leads_context(findings),
         demos=demos.entries,
     )
 
@@ -200,10 +224,9 @@ def _changes(store: Store, demos: Demos, post: Post, outcome: Outcome) -> dict[s
     for name in FRAGMENTS:
         if name == "data" and same_entries:
             continue  # the fields stand already; their texts and faults are sent by themselves
-        html = render(f"desk_{name}.html", desk=context)
-        mark = blake2b(html.encode(), digest_size=8).hexdigest()
-        if shown.get(name) != mark:
-            fragments[name] = {"html": html, "mark": mark}
+        fragment = _fragment(name, context)
+        if shown.get(name) != fragment.mark:
+            fragments[name] = {"html": fragment.html, "mark": fragment.mark}
     return {
         "revision": revision.number,
         "structure": context.form.structure,

@@ -31,7 +31,8 @@ def test_the_desk(desk_at: Callable[..., Desk], shared_server: Running, scheme: 
     if state == "faulty":
         desk.edit(desk.values().nth(0), "2*")
     if state == "large":
-        desk.page.get_by_role("button", name="Large type").click()
+        with desk.page.expect_navigation():
+            desk.page.get_by_role("button", name="Large type").click()
     assert violations(desk) == []
 
 

@@ -122,11 +122,12 @@ def test_the_server_away_is_said_and_the_text_is_kept(
 
 def test_a_demo_is_opened(desk: Desk) -> None:
     desk.page.get_by_text("Demo problems").click()
-    button = desk.page.locator(".demos button").first
+    button = desk.page.locator("#demos button").nth(3)
     name = button.inner_text()
     with desk.answered():
         button.click()
     assert desk.page.input_value("#name") == name
+    assert not button.is_visible(), "the list folds up again"
 
 
 def test_a_document_goes_out_and_comes_back(desk: Desk) -> None:
@@ -153,7 +154,8 @@ def test_a_refused_document_stays_with_its_faults(desk: Desk) -> None:
 
 
 def test_large_type_is_kept(desk: Desk) -> None:
-    desk.page.get_by_role("button", name="Large type").click()
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Large type").click()
     assert desk.page.locator("html.large").count() == 1
     desk.open()
     assert desk.page.locator("html.large").count() == 1
