@@ -1,7 +1,7 @@
 """Walls: published counts, a brute-force enumeration, verdicts on and off them."""
 
 import random
-from time import perf_counter
+from time import process_time
 
 import pytest
 
@@ -47,9 +47,9 @@ COUNTS = [
 @pytest.mark.parametrize(("text", "count"), COUNTS)
 def test_counts_of_rigid_tuples(text: str, count: int) -> None:
     problem = problem_from_shorthand(text)
-    start = perf_counter()
+    start = process_time()
     found = walls(problem)
-    assert perf_counter() - start < 0.2
+    assert process_time() - start < 0.2
     assert found.complete and found.proved and found.generic.exists is True
     assert len(found.walls) == count
     assert not any(wall.holds for wall in found.walls)

@@ -130,9 +130,9 @@ def test_a_form_of_2400_fields_is_read_quickly():
     assert body.count(b"&") > 2400
     times = []
     for _ in range(9):
-        begun = time.perf_counter()
+        begun = time.process_time()
         parse_form(body)
-        times.append(time.perf_counter() - begun)
+        times.append(time.process_time() - begun)
     assert sorted(times)[4] < 0.03  # about 2 ms on a quiet machine
 
 
@@ -408,9 +408,9 @@ def test_an_edit_at_rank_100_is_stored_in_time(tmp_path, demos):
         for number in range(9):
             shown = store.current()
             body = urlencode({**form(shown, eigenvalue_e700_value=str(number)), "revision": shown.number}).encode()
-            begun = time.perf_counter()
+            begun = time.process_time()
             fields = parse_form(body)
             outcome = accept(store, Post(fields, "", shown.number), demos)
-            times.append(time.perf_counter() - begun)
+            times.append(time.process_time() - begun)
             assert outcome.changed
         assert sorted(times)[4] < 0.1
