@@ -87,11 +87,9 @@ class _Judge:
         if reduction.blocked is not None:
             return self._split()
         if reduction.outcome == "real":
-            return self._yes(
-                f"{self._lead(' with non-zero parameter')} to rank one: the data are rigid, and the {self.thing} is "
-                "unique up to isomorphism.",
-                "coordinate vector",
-            )
+            words = f"{self._lead(' with non-zero parameter')} to rank one" if reduction.moves else "The rank is one"
+            reason = f"{words}: the data are rigid, and the {self.thing} is unique up to isomorphism."
+            return self._yes(reason, "coordinate vector")
         return self._fundamental()
 
     def _is_root(self) -> bool:

@@ -124,7 +124,8 @@ def examine(problem: Problem) -> Findings:
     Cost: the reductions of the additive and the multiplicative problem dominate (see ``roots/reduction.py``).
     """
     quiver = None if problem.ramified else quiver_of(problem)
-    reduction = None if quiver is None else reduce(quiver)
+    modular = problem.reading == "local_monodromy"
+    reduction = None if quiver is None else reduce(quiver, modulo_integers=modular)
     return Findings(
         problem=problem,
         rank=problem.rank,

@@ -132,3 +132,20 @@ def test_examining_imports_nothing_heavy() -> None:
     )
     run = subprocess.run([sys.executable, "-c", program], capture_output=True, text=True, check=True)
     assert run.stderr.strip() == "[]"
+
+
+def test_the_descent_of_local_monodromies_stops_at_integers() -> None:
+    """θ_1 + θ_2 + θ_3 = 1 for one eigenvalue of each pole: the middle convolution there is trivial."""
+    poles = [
+        {"at": str(k), "blocks": [{"exponent": {}, "local_monodromy": [{"value": v, "jordan": [1]} for v in pair]}]}
+        for k, pair in enumerate((("1/2", "0"), ("1/3", "0"), ("1/6", "0")))
+    ]
+    document = {"format": "polewright-problem/1", "name": "", "symbols": [], "poles": poles}
+    findings = examine(problem_from_json(document))
+    assert findings.descent == ()
+    assert findings.multiplicative is not None and findings.multiplicative.exists is False
+
+
+def test_rank_one_is_said_to_be_rank_one() -> None:
+    verdict = examine(problem_from_shorthand("1,1,1")).additive
+    assert verdict is not None and verdict.exists is True and verdict.reason.startswith("The rank is one")
