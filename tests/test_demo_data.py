@@ -42,7 +42,7 @@ MEANT = {
     "13-the-sum-is-wrong": Meant(2, 0, False, False, "", "D4"),
     "14-on-a-wall": Meant(3, 0, False, False, "vanishing parameter", "E6"),
     "15-monodromy-of-the-lock": Meant(4, 2, None, True, "fundamental set", "D4^(1)"),
-    "16-the-light-at-the-cape": Meant(2, 0, None, None, "", None),
+    "16-the-light-at-the-cape": Meant(2, 0, True, None, "", None),
     "17-resonant-buoys": Meant(2, 0, True, False, "coordinate vector", "D4"),
 }
 
