@@ -36,6 +36,7 @@ RESONANCES_SHOWN = 20
 STEPS_SHOWN = 8
 STEPS_LISTED = 40
 DOCUMENT_CARRIED = 12_000
+_SHORTEST_EIGENVALUE = len('{"value":"a","jordan":[1]}')
 
 STATUS_WORDS = {
     "proved": "proved",
@@ -354,8 +355,11 @@ def leads_context(findings: Findings) -> LeadsContext | None:
 
     Cost: one canonical text.
     """
-    document = "" if findings.quiver is None else canonical_text(findings.problem)
-    return LeadsContext(document) if 0 < len(document) <= DOCUMENT_CARRIED else None
+    eigenvalues = sum(len(block.residue) for pole in findings.problem.poles for block in pole.blocks)
+    if findings.quiver is None or eigenvalues > DOCUMENT_CARRIED // _SHORTEST_EIGENVALUE:
+        return None
+    document = canonical_text(findings.problem)
+    return LeadsContext(document) if len(document) <= DOCUMENT_CARRIED else None
 
 
 def descent_context(findings: Findings) -> DescentContext | None:

@@ -78,11 +78,11 @@ def test_the_message_goes_when_the_server_is_back(desk: Desk) -> None:
     message = desk.page.get_by_text("does not answer")
     message.wait_for()
     desk.page.unroute("**/desk")
-    desk.edit(desk.values().nth(1), "1/4")
+    desk.edit(desk.values().nth(1), "1/3")
     desk.page.wait_for_timeout(600)
     assert message.count() == 0
     desk.open()
-    assert [desk.values().nth(k).input_value() for k in (0, 1)] == ["29/4", "1/4"]
+    assert [desk.values().nth(k).input_value() for k in (0, 1)] == ["29/4", "1/3"]
 
 
 def test_a_page_of_an_older_state_is_brought_up_to_date(desk: Desk, desk_at: Any, shared_server: Any) -> None:

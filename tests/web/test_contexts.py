@@ -287,3 +287,14 @@ def test_blocks_with_faults_stand_open():
     draft = replace(draft, poles=(draft.poles[0], replace(pole, blocks=(broken,)), draft.poles[2]))
     faults = {fault.field: fault for fault in read_draft(draft).faults}
     assert FormContext(draft, structure_of(draft), 1, faults).open_blocks == {block.id}
+
+
+def test_what_leads_to_other_pages_is_the_problem_itself():
+    problem = problem_from_shorthand("21,111,111")
+    leads = leads_context(examine(problem))
+    assert leads is not None and read_document(leads.document) == problem
+
+
+@pytest.mark.parametrize("shorthand", ["(1)_3/2", ",".join(["1^60"] * 10), "1^300,1^300,299 1"])
+def test_nothing_leads_on_from_large_and_ramified_problems(shorthand):
+    assert leads_context(examine(problem_from_shorthand(shorthand))) is None
