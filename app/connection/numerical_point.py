@@ -17,9 +17,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from app.connection.float_matrix import Array, FloatMatrix, floating
-from app.connection.stages import Stage, StageBlock, principal_scalars
-from app.exact.value import ZERO, Value
-from app.local.partition import conjugate
+from app.connection.normal_form import NormalForm, stage_normal_form
+from app.connection.stages import Stage
 from app.progress import Progress
 
 STARTS = 8
@@ -44,13 +43,19 @@ class Point:
 
 
 def find_point(stage: Stage, seed: int, progress: Progress, starts: int = STARTS) -> Point:
-    """A point on the orbits of a stage without symbols, residues adding up to its excess.
+    """A point on the orbits of a stage without symbols, residues adding up to its excess; see ``find_tuple``."""
+    normal = [stage_normal_form(blocks) for blocks in stage.poles]
+    return find_tuple(normal, seed, progress, starts, floating(stage.excess))
+
+
+def find_tuple(
+    normal: Sequence[NormalForm], seed: int, progress: Progress, starts: int = STARTS, excess: complex = 0
+) -> Point:
+    """A point on the orbits of normal forms, ramified or not, residues adding up to ``excess`` times the identity.
 
     Deterministic for a seed.  Returns the best start where none converges.
     Cost: for each iteration one linear system of size n² and products of matrices of size n(r+1).
     """
-    normal = [_normal_form(blocks) for blocks in stage.poles]
-    excess = floating(stage.excess)
     real = bool(np.isreal(excess)) and not any(one.form.imag.any() for one in normal)
     best: tuple[float, list[Array]] | None = None
     for start in range(starts):
@@ -73,61 +78,15 @@ def _point(found: tuple[float, list[Array]], starts: int, converged: bool) -> Po
 
 
 @dataclass(frozen=True)
-class _Normal:
-    """A normal form of shape (r + 1, n, n), entry k belonging to z^(−k−1) dz, and its eigenspaces.
-
-    ``spaces`` are ranges of columns with one formal eigenvalue, each with whether it is semisimple.
-    """
-
-    form: Array
-    spaces: tuple[tuple[range, bool], ...]
-
-    @property
-    def scalar(self) -> bool:
-        """Whether the orbit is a point."""
-        return len(self.spaces) == 1 and self.spaces[0][1]
-
-
-def _normal_form(blocks: tuple[StageBlock, ...]) -> _Normal:
-    """The normal form of a pole."""
-    spaces: list[tuple[range, bool]] = []
-    size = sum(block.multiplicity for block in blocks)
-    order = max((block.exponent[0][0] for block in blocks if block.exponent), default=0)
-    form = np.zeros((order + 1, size, size), dtype=np.complex128)
-    start = 0
-    for block in blocks:
-        for k, scalar in enumerate(principal_scalars(block.exponent, ZERO)):
-            for j in range(start, start + block.multiplicity):
-                form[k, j, j] += floating(scalar)
-        for value, jordan in jordan_type(block):
-            spaces.append((range(start, start + sum(jordan)), max(jordan) == 1))
-            for length in jordan:
-                for j in range(start, start + length):
-                    form[0, j, j] += floating(value)
-                    if j > start:
-                        form[0, j - 1, j] = 1
-                start += length
-    return _Normal(form, tuple(spaces))
-
-
-def jordan_type(block: StageBlock) -> list[tuple[Value, tuple[int, ...]]]:
-    """Eigenvalues of a block's class with their Jordan block sizes, from its slots."""
-    drops: dict[Value, list[int]] = {}
-    for slot in block.slots:
-        drops.setdefault(slot.value, []).append(slot.drop)
-    return [(value, conjugate(tuple(sorted(found, reverse=True)))) for value, found in drops.items()]
-
-
-@dataclass(frozen=True)
 class _Place:
     """A point of an orbit: the normal form, the gauge as a block Toeplitz matrix, and the principal part they give."""
 
-    normal: _Normal
+    normal: NormalForm
     gauge: Array
     part: Array
 
     @classmethod
-    def of(cls, normal: _Normal, gauge: Array) -> "_Place":
+    def of(cls, normal: NormalForm, gauge: Array) -> "_Place":
         """The point that a gauge leads to; parts are always made anew from the normal form, so no errors pile up."""
         return cls(normal, gauge, normal.form if normal.scalar else _conjugated(normal.form, gauge))
 
@@ -155,7 +114,7 @@ class _Place:
         return 1.0 if self.normal.scalar else float(np.linalg.cond(self.gauge))
 
 
-def _random_place(normal: _Normal, source: np.random.Generator, complex_start: bool) -> _Place:
+def _random_place(normal: NormalForm, source: np.random.Generator, complex_start: bool) -> _Place:
     """A random point of the orbit, by a well conditioned random gauge."""
     length, size, _ = normal.form.shape
     gauge = np.zeros_like(normal.form)

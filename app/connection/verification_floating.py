@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 from app.connection.connection import Check, Connection, floating_parts
 from app.connection.float_matrix import Array, FloatMatrix, floating
 from app.connection.formal_reduction import conjugation_defect, formal_reduction
+from app.connection.normal_form import tangent_map
 from app.exact.matrix import NotTheRank
 from app.exact.number import write_number
 from app.local.formal_type import Eigenvalue, Pole
@@ -136,7 +137,7 @@ def _tangent_check(parts: Sequence[Sequence[Array]], expected: int) -> Check:
     size = parts[0][0].shape[0]
     whole, gap, residues = 0, np.inf, []
     for part in parts:
-        rows = _tangent_map(part)
+        rows = tangent_map(part)
         rank, found = _rank_with_gap(rows, max(float(np.abs(array).max(initial=0)) for array in part))
         whole, gap = whole + rank, min(gap, found)
         residues.append(rows[: size * size])
@@ -146,16 +147,6 @@ def _tangent_check(parts: Sequence[Sequence[Array]], expected: int) -> Check:
     return Check(
         "tangent dimension", dimension == expected, f"{dimension}, expected {expected} (gap {min(gap, found):.0e})"
     )
-
-
-def _tangent_map(part: Sequence[Array]) -> Array:
-    """The matrix of X ↦ principal part of [X, A] on gl_n[z]/z^(r+1); the residue's rows stand first."""
-    size, length = part[0].shape[0], len(part)
-    one = np.eye(size)
-    brackets = [np.kron(one, matrix.T) - np.kron(matrix, one) for matrix in part]
-    zero = np.zeros_like(brackets[0])
-    rows = [[brackets[k + m] if k + m < length else zero for m in range(length)] for k in range(length)]
-    return np.asarray(np.block(rows), dtype=np.complex128)
 
 
 def _rank_with_gap(matrix: Array, scale: float) -> tuple[int, float]:

@@ -4,7 +4,8 @@ import numpy as np
 import pytest
 
 from app.connection.generic_values import generic_values
-from app.connection.numerical_point import find_point, jordan_type
+from app.connection.normal_form import jordan_type
+from app.connection.numerical_point import find_point
 from app.connection.stages import descend, stage_of
 from app.connection.verification import problem_at
 from app.errors import OutOfTime
