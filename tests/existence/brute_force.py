@@ -10,10 +10,11 @@ root test and the table of decompositions are written anew from the published de
 """
 
 import itertools
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from fractions import Fraction
 from functools import cache
+from math import lcm
 
 Exponent = dict[int, int]
 Residue = list[tuple[Fraction, list[int]]]
@@ -127,6 +128,15 @@ def vanishes(case: Case, x: Sequence[int], modulo_integers: bool) -> bool:
     return value.denominator == 1 if modulo_integers else value == 0
 
 
+def vanishing_on(case: Case, modulo_integers: bool) -> Callable[[Sequence[int]], bool]:
+    """``vanishes`` with the parameters over one denominator: whole numbers, for many vectors."""
+    scale = lcm(*(value.denominator for value in case.parameters))
+    whole = [int(value * scale) for value in case.parameters]
+    if modulo_integers:
+        return lambda x: sum(map(int.__mul__, whole, x)) % scale == 0
+    return lambda x: sum(map(int.__mul__, whole, x)) == 0
+
+
 def in_lattice(case: Case, x: Sequence[int]) -> bool:
     return len({sum(x[v] for v in group) for group in case.groups}) == 1
 
@@ -134,11 +144,11 @@ def in_lattice(case: Case, x: Sequence[int]) -> bool:
 def exists(case: Case, *, modulo_integers: bool = False) -> bool:
     """Whether α ∈ Σ: α is an admissible root and p(α) exceeds Σ p over every way to write it as a longer sum."""
     whole = tuple(case.alpha)
-    ranges = [range(n + 1) for n in whole]
+    admissible = vanishing_on(case, modulo_integers)
     roots = [
         x
-        for x in itertools.product(*ranges)
-        if any(x) and in_lattice(case, x) and vanishes(case, x, modulo_integers) and is_root(case, x)
+        for x in itertools.product(*(range(n + 1) for n in whole))
+        if admissible(x) and any(x) and in_lattice(case, x) and is_root(case, x)
     ]
     if whole not in roots:
         return False

@@ -64,22 +64,6 @@ def balanced(generator: random.Random, found: list[Pole]) -> list[Pole] | None:
     return found if len({value for value, _ in block}) == len(block) else None
 
 
-def doubled(generator: random.Random) -> list[Pole]:
-    """A multiple of an affine log type, or one with a further vertex at an end: the shapes (I) and (III)."""
-    shapes = [[[1, 1]] * 4, [[1, 1, 1]] * 3, [[1, 1], [1, 1, 1, 1], [1, 1, 1, 1]]]
-    shape = generator.choice(shapes)
-    times = 2
-    found: list[Pole] = []
-    for parts in shape:
-        values = generator.sample(INTEGERS + HALVES[1::2], len(parts))
-        found.append([({}, [(value, [1] * (times * part)) for value, part in zip(values, parts, strict=True)])])
-    trace = sum(value * sum(sizes) for pole in found for _, block in pole for value, sizes in block)
-    last = found[-1][0][1]
-    value, sizes = last[-1]
-    last[-1] = (value - trace / sum(sizes), [2] if generator.random() < 0.5 else sizes)
-    return found if len({v for v, _ in last}) == len(last) else doubled(generator)
-
-
 def document(found: list[Pole], reading: str = "residue") -> dict[str, Any]:
     """The problem document of plain data."""
     written = [
