@@ -21,7 +21,7 @@ CRITERIA: Mapping[Criterion, str] = {
     "fundamental set": "the reduced vector lies in the fundamental set and none of the exceptions there applies",
     "fundamental set, several poles": "the criterion for several irregular poles holds for the reduced vector",
     "enumeration": "all decompositions of the reduced vector were enumerated",
-    "vanishing parameter": "a reflection with parameter 0 was reached; there a part splits off",
+    "vanishing parameter": "a reflection whose parameter vanishes was reached; there a part splits off",
     "multiple of an isotropic root": "the reduced vector is a multiple of an isotropic root",
     "bridge": "the diagram has a bridge with dimension 1 at both ends, and a side on which the parameters vanish",
     "affine end": "behind a bridge of the diagram stands a multiple of an isotropic root with vanishing parameters",
@@ -45,6 +45,7 @@ def certificate_words(verdict: Verdict) -> list[str]:
         case NotARoot(steps, reduced, failure):
             return [*_steps_words(steps), f"vector reached: {_vector(quiver, reduced)}", f"failure: {failure}"]
         case Decomposition(parts, criterion):
+            modulo = " (vanishing is meant modulo integers)" if verdict.modulo_integers else ""
             vanish = "θ takes integers" if verdict.modulo_integers else "λ vanishes"
             words = [f"{q.multiplicity} × ({_vector(quiver, q.vector)}), p = {q.p}" for q in parts]
             total = sum(part.multiplicity * part.p for part in parts)
@@ -52,7 +53,7 @@ def certificate_words(verdict: Verdict) -> list[str]:
                 f"α is the sum of these positive roots, on which {vanish}:",
                 *words,
                 f"their p add up to {total}, which is not less than p(α) = {p_of(quiver, quiver.dimension)}",
-                f"found by: {CRITERIA[criterion]}",
+                f"found by: {CRITERIA[criterion]}{modulo}",
             ]
         case FuchsDefect():
             return []
