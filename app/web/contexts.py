@@ -374,7 +374,7 @@ def descent_context(findings: Findings) -> DescentContext | None:
         if number <= STEPS_SHOWN:
             picture = Markup(
                 small_svg(
-                    place(quiver, step.dimension),
+                    place(quiver, step.dimension, small=True),
                     title=f"After step {number}",
                     description=f"rank {step.rank}",
                     name=f"step-{number}",

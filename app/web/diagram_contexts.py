@@ -65,7 +65,15 @@ def diagram_context(findings: Findings, selected: str | None = None) -> DiagramC
     def link(vertex_id: str, markup: str) -> str:
         return f'<a href="#vertex-{vertex_id}" class="vertex-link">{markup}</a>'
 
-    picture = Markup(svg(place(quiver), title=title, description=description, selected=selected, wrap=link))
+    picture = Markup(
+        svg(
+            place(quiver, symbols=findings.problem.symbols),
+            title=title,
+            description=description,
+            selected=selected,
+            wrap=link,
+        )
+    )
     vertices = tuple(_vertices(quiver, findings.problem))
     type_ = type_mathml(findings.support_type or "")
     return DiagramContext(picture, vertices, type_, polygons=_polygons(findings))

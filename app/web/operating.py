@@ -175,4 +175,11 @@ def _picture(findings: Findings, selected: str | None) -> Markup:
         return Markup("")
     description = f"{len(findings.quiver.vertices)} vertices; hexagons are core vertices, discs leg vertices."
     title = f"Quiver of type {findings.support_type}"
-    return Markup(svg(place(findings.quiver), title=title, description=description, selected=selected))
+    return Markup(
+        svg(
+            place(findings.quiver, symbols=findings.problem.symbols),
+            title=title,
+            description=description,
+            selected=selected,
+        )
+    )
