@@ -5,12 +5,16 @@ isomorphism) or at a fundamental datum; one of rank 2 has a chart with accessory
 the matrices climb back up (``ascent``).  Otherwise a numerical point is found on the fundamental datum, with generic
 values for the symbols, and climbs up in floating arithmetic; on request, directly on the problem's own orbits.
 
+Ramified data: numerical points only, on the orbits of their normal forms (``normal_form``).  Where existence is open,
+a verified irreducible point is evidence, and a search without one decides nothing; the note says which.
+
 Where no irreducible system exists the numerical search on the problem's orbits is run as an illustration, and what it
 found is said.
 """
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from math import ceil
 from typing import TYPE_CHECKING
 
 from app.connection.ascent import ascend, parts_of_rank_one
@@ -45,6 +49,7 @@ from app.roots.reduction import reduce
 
 if TYPE_CHECKING:
     from app.connection.float_matrix import FloatMatrix
+    from app.connection.numerical_point import Point
 
 DEFAULT_TIME_LIMIT = 60.0
 MAXIMUM_RANK = 32
@@ -52,6 +57,13 @@ MAXIMUM_SIZE = 2048
 _SEEDS = 5
 _SEED_STEP = 1000
 _ATTEMPTS = 3
+_RAMIFIED_SEARCH = (
+    "Numerical search on the orbits of the ramified normal forms; exact matrices are not built for these."
+)
+_EVIDENCE = (
+    "Existence is open. The point found is irreducible and passes every check in floating arithmetic: numerical "
+    "evidence that an irreducible system exists, no proof."
+)
 
 
 @dataclass(frozen=True)
@@ -85,27 +97,26 @@ def construct(
     """A connection with the problem's orbits.
 
     Args:
-        problem: unramified, with residues given.
+        problem: with residues given.  Ramified data have a numerical point only.
         numeric: a floating point by Newton's method directly on the problem's orbits, independent of the descent.
         seed: chooses the values for symbols and the starts of numerical searches.
         time_limit: in seconds, None for none; ``progress`` replaces it where given.
 
-    Raises Refused for ramified data, for local monodromies and for a field too large; TooLarge; OutOfTime; Failed
+    Raises Refused for local monodromies and for a field too large; TooLarge; OutOfTime; Failed
     where the construction contradicts the verdict (a fault of the program).
     """
     if problem.reading == "local_monodromy":
         raise Refused("A connection is constructed from residues; this problem gives local monodromies.")
-    if problem.ramified:
-        raise Refused("Explicit connections are built for unramified data only; this problem has a ramified block.")
     _check_size(problem)
     watch = progress or (Unlimited() if time_limit is None else Deadline(time_limit, OutOfTime))
     watch.report("existence")
-    quiver = quiver_of(problem)
-    verdict = additive_verdict(problem, quiver, reduce(quiver))
+    verdict = _verdict(problem)
     if verdict is None:
         raise Failed("There is no verdict on this problem.")
     if verdict.exists is False:
         return _illustration(problem, verdict, seed, watch)
+    if problem.ramified:
+        return _ramified(problem, verdict, seed, watch)
     if numeric:
         return _direct(problem, verdict, seed, watch)
     descent = descend(problem)
@@ -116,11 +127,16 @@ def construct(
     return _floating(problem, verdict, seed, watch)
 
 
+def _verdict(problem: Problem) -> Verdict | None:
+    quiver = None if problem.ramified else quiver_of(problem)
+    return additive_verdict(problem, quiver, None if quiver is None else reduce(quiver))
+
+
 def _check_size(problem: Problem) -> None:
     """Refuse, before any work, what would need too large matrices: the tangent maps have size n²(r + 1)."""
     if problem.rank > MAXIMUM_RANK:
         raise TooLarge(f"Connections are constructed up to rank {MAXIMUM_RANK}; this problem has rank {problem.rank}.")
-    order = max((int(block.exponent.slope) for pole in problem.poles for block in pole.blocks), default=0)
+    order = max((ceil(block.exponent.slope) for pole in problem.poles for block in pole.blocks), default=0)
     if problem.rank**2 * (order + 1) > MAXIMUM_SIZE:
         raise TooLarge(
             f"Connections are constructed while rank² · order of the worst pole is at most {MAXIMUM_SIZE}; here it is "
@@ -167,7 +183,7 @@ def _shortened(parts: list[list[ExactMatrix]]) -> list[list[ExactMatrix]]:
 
 def _floating(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
     """A numerical point on the fundamental datum, ascended; the first of a few that is verified, else the first."""
-    from app.connection.numerical_point import Point, find_point
+    from app.connection.numerical_point import find_point
 
     values = _values(problem, seed)
     special = problem_at(problem, values)
@@ -199,13 +215,11 @@ def _floating(problem: Problem, verdict: Verdict, seed: int, progress: Progress)
 
 def _direct(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
     """A numerical point directly on the problem's orbits; where none is good, one by ascent."""
-    from app.connection.numerical_point import find_point
-
     values = _values(problem, seed)
     special = problem_at(problem, values)
     best: Construction | None = None
     for attempt in range(_ATTEMPTS):
-        point = find_point(stage_of(special), seed + _SEED_STEP * attempt, progress)
+        point = _point_on_orbits(special, seed + _SEED_STEP * attempt, progress)
         if not point.converged:
             continue
         method = f"Numerical: Newton's method on the orbits themselves (start {point.starts})."
@@ -221,17 +235,59 @@ def _direct(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -
     return best or _not_found(problem, verdict, "Newton's method did not converge from any start", point.residual)
 
 
+def _point_on_orbits(special: Problem, seed: int, progress: Progress) -> "Point":
+    """A numerical point on the orbits of a problem without symbols, for every formal type."""
+    from app.connection.normal_form import normal_form
+    from app.connection.numerical_point import find_tuple
+
+    return find_tuple([normal_form(pole) for pole in special.poles], seed, progress)
+
+
+def _ramified(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
+    """A numerical point for ramified data, the first of a few that is verified, else the first; with a careful note."""
+    values = _values(problem, seed)
+    special = problem_at(problem, values)
+    best: Construction | None = None
+    starts, residual = 0, float("inf")
+    for attempt in range(_ATTEMPTS):
+        point = _point_on_orbits(special, seed + _SEED_STEP * attempt, progress)
+        starts += point.starts
+        residual = min(residual, point.residual)
+        if not point.converged:
+            continue
+        method = (
+            "Numerical evidence, no proof: Newton's method on the orbits of the ramified normal forms "
+            f"(start {point.starts}). Exact matrices are built for unramified data only."
+        )
+        connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], point.parts))
+        built = _finished(problem, verdict, connection, method, progress)
+        if built.verified:
+            return built if verdict.exists else _noted(built, _EVIDENCE)
+        best = best or built
+    conclusion = "A theorem proves existence all the same." if verdict.exists else "This decides nothing."
+    if best is not None:
+        return _noted(best, f"No point that passes all checks was found in {starts} starts. {conclusion}")
+    missed = _not_found(problem, verdict, f"Nothing was found in {starts} starts", residual, _RAMIFIED_SEARCH)
+    return replace(missed, note=f"{missed.note} {conclusion}")
+
+
+def _noted(built: Construction, note: str) -> Construction:
+    """With a note, in the connection's own words too, so that its document never travels without the caution."""
+    connection = built.connection
+    if connection is not None:
+        connection = replace(connection, method=f"{connection.method} {note}")
+    return replace(built, note=note, connection=connection)
+
+
 def _illustration(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
     """No irreducible system exists: what a numerical search on the orbits finds all the same."""
-    from app.connection.numerical_point import find_point
-
     method = "No irreducible system exists; numerical search as an illustration."
     if problem.trace_sum:
         note = f"The traces add up to {write_number(problem.trace_sum)}, so the residues cannot add up to 0."
         return Construction(problem, None, method, False, note)
     values = _values(problem, seed)
     special = problem_at(problem, values)
-    point = find_point(stage_of(special), seed, progress)
+    point = _point_on_orbits(special, seed, progress)
     if not point.converged:
         return _not_found(problem, verdict, f"{point.starts} starts did not converge", point.residual, method)
     connection = _numerical(special, values, poles_of([pole.at for pole in special.poles], point.parts))
@@ -260,8 +316,9 @@ def _finished(
 
 
 def with_gauges(problem: Problem, connection: Connection) -> Connection:
-    """The connection with a normalising gauge at every irregular pole; none where the formal reduction fails."""
-    if problem.all_log:
+    """The connection with a normalising gauge at every irregular pole; none where the formal reduction fails,
+    and none for ramified data."""
+    if problem.all_log or problem.ramified:
         return connection
     if connection.kind == "exact":
         exact = exact_parts(connection, _stage_values(stage_of(problem)))
@@ -298,14 +355,14 @@ def _stage_values(stage: Stage) -> list[Value]:
 
 def _values(problem: Problem, seed: int) -> dict[str, Value]:
     """Generic values for all symbols under which the problem keeps its verdict."""
-    asked = additive_verdict(problem, quiver := quiver_of(problem), reduce(quiver))
+    asked = _verdict(problem)
     for attempt in range(_SEEDS):
         values = generic_values(problem.symbols, seed + _SEED_STEP * attempt)
         try:
             special = problem_at(problem, values)
         except Refused:
             continue
-        found = additive_verdict(special, quiver := quiver_of(special), reduce(quiver))
+        found = _verdict(special)
         if found is not None and asked is not None and found.exists == asked.exists:
             return values
     raise Refused("No values for the symbols were found under which the problem keeps its verdict.")

@@ -3,12 +3,13 @@
 Everything is recomputed from the finished matrices and the problem; nothing is taken over from the construction.
 
     sum of residues      the residues of all poles add up to 0
-    class at a pole      formal reduction to the asked exponents, then ranks of powers of L − ξ for every eigenvalue
+    class at a pole      formal reduction to the asked exponents, then ranks of powers of L − ξ for every eigenvalue;
+                         at a ramified pole gauges to the normal form are sought (``verification_ramified``)
     irreducibility       the coefficients generate an algebra of dimension n²
     tangent dimension    ranks of X ↦ [X, A] at the poles, against the expected dimension 2p(α)
 
 Exact matrices: ``verification_exact``; floating ones: ``verification_floating``, which adds how far they are from
-exactness.
+exactness.  Against ramified data exact matrices too are checked in floating arithmetic.
 """
 
 from collections.abc import Iterator
@@ -42,7 +43,7 @@ def verify(problem: Problem, connection: Connection, progress: Progress) -> tupl
 
 
 def _checks(problem: Problem, connection: Connection, progress: Progress) -> Iterator[Check]:
-    if connection.kind == "exact":
+    if connection.kind == "exact" and not problem.ramified:
         from app.connection.verification_exact import exact_checks
 
         return exact_checks(problem, connection, progress)
@@ -58,7 +59,12 @@ def _check_match(problem: Problem, connection: Connection) -> None:
     if [pole.at for pole in connection.poles] != [pole.at for pole in problem.poles]:
         message = "The poles of the connection are not those of the problem, in the same order"
         raise Refused(f"{message}.", (Place("/poles", message, "the same positions in the same order"),))
-    if connection.kind == "numerical" and unassigned(problem):
+    if connection.kind == "exact" and problem.ramified and connection.symbols:
+        names = ", ".join(connection.symbols)
+        raise Refused(
+            f"Ramified data are checked in floating arithmetic, with a value for every symbol; {names} have none."
+        )
+    if (connection.kind == "numerical" or problem.ramified) and unassigned(problem):
         names = ", ".join(unassigned(problem))
         raise Refused(f"A numerical connection needs a value for every symbol; {names} have none.")
 

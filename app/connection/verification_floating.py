@@ -14,6 +14,7 @@ from app.connection.connection import Check, Connection, floating_parts
 from app.connection.float_matrix import Array, FloatMatrix, floating
 from app.connection.formal_reduction import conjugation_defect, formal_reduction
 from app.connection.normal_form import tangent_map
+from app.connection.verification_ramified import ramified_class_check
 from app.exact.matrix import NotTheRank
 from app.exact.number import write_number
 from app.local.formal_type import Eigenvalue, Pole
@@ -64,6 +65,8 @@ class _Rank:
 def _class_check(number: int, pole: Pole, part: Sequence[FloatMatrix]) -> tuple[Check, float]:
     """The class at a pole, and its distance from exactness."""
     name = f"class at pole {number + 1}"
+    if pole.ramified:
+        return ramified_class_check(name, pole, [matrix.array for matrix in part])
     exponents = [tuple((int(power), value) for power, value in block.exponent.terms) for block in pole.blocks]
     sizes = [block.multiplicity for block in pole.blocks]
     order = max((exponent[0][0] for exponent in exponents if exponent), default=0)

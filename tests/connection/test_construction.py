@@ -218,12 +218,6 @@ def test_failing_fuchs_relation_is_said():
     assert "traces" in built.note
 
 
-def test_ramified_data_are_refused():
-    problem = general_problem([("infinity", [({"1/2": "1"}, [("0", [1])])]), ("0", [({}, [("1", [1]), ("-1", [1])])])])
-    with pytest.raises(Refused, match="unramified"):
-        construct(problem)
-
-
 def test_too_large_problems_are_refused_before_any_work():
     with pytest.raises(TooLarge, match="rank 40"):
         construct(problem_from_shorthand("[39]1,1^40,1^40"))
