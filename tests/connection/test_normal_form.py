@@ -13,6 +13,7 @@ from app.connection.generic_values import generic_values
 from app.connection.normal_form import normal_form, orbit_defect, stage_normal_form, tangent_map
 from app.connection.stages import stage_of
 from app.connection.verification import problem_at, verify
+from app.connection.verification_ramified import ramified_class_check
 from app.errors import Refused
 from app.exact.number import parse_number
 from app.exact.quotient import Quotient
@@ -161,3 +162,44 @@ def test_another_order_is_not_that_bessel_equation():
 def test_exact_matrices_with_symbols_are_not_checked_against_ramified_data():
     with pytest.raises(Refused, match="floating"):
         verify(airy_problem(2), dataclasses.replace(airy(2), symbols=("a",)), Unlimited())
+
+
+def hypergeometric(betas, alphas):
+    """Π(θ − β) y = x Π(θ + α) y, θ = x d/dx, as a companion system (A_0 + x A_1) dx/x: its coefficients at infinity."""
+    rank = len(betas)
+    left = np.poly([float(beta) for beta in betas])
+    right = np.atleast_1d(np.poly([-float(alpha) for alpha in alphas]))
+    residue = np.diag(np.ones(rank - 1), 1).astype(complex)
+    residue[-1] = -left[:0:-1]
+    leading = np.zeros((rank, rank), dtype=complex)
+    leading[-1, : len(right)] = right[::-1]
+    return [-residue, -leading]
+
+
+BETAS = [Fraction(1, 5), Fraction(2, 7), Fraction(-3, 11), Fraction(5, 13), Fraction(4, 17)]
+ALPHAS = [Fraction(1, 3), Fraction(2, 19), Fraction(3, 23)]
+
+
+@pytest.mark.parametrize(("rank", "count"), [(2, 0), (3, 0), (3, 1), (4, 0), (4, 1), (4, 2), (5, 1), (5, 2), (5, 3)])
+def test_hypergeometric_equations(rank, count):
+    """At infinity rank − count solutions grow like exp(e x^(1/e)), e = rank − count; the others behave like x^(−α).
+
+    The trivial lattice is the sum of a lattice of the chain and one for the α: with any α moved by 1 it is not.
+    """
+    betas, alphas = BETAS[:rank], ALPHAS[:count]
+    part = hypergeometric(betas, alphas)
+    assert ramified_class_check("", hypergeometric_pole(betas, alphas), part)[0].holds
+    for shift in (-1, 1):
+        pole = hypergeometric_pole(betas, [*alphas[:-1], alphas[-1] + shift] if alphas else [], 0 if alphas else shift)
+        assert not ramified_class_check("", pole, part)[0].holds
+
+
+def hypergeometric_pole(betas, alphas, shift=0):
+    """The formal type at infinity; the Fuchs relation gives the value of the ramified block."""
+    index = len(betas) - len(alphas)
+    blocks = [({f"1/{index}": str(index)}, [(str(-sum(betas) - sum(alphas) + shift), [1])])]
+    if alphas:
+        blocks.append(({}, [(str(alpha), [1]) for alpha in alphas]))
+    log = ({}, [(str(beta), [1]) for beta in betas[:-1]])
+    log[1].append(("*", [1]))
+    return general_problem([("infinity", blocks), ("0", [log])]).poles[0]
