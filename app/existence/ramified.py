@@ -8,6 +8,7 @@ of a complete chain of lattices that holds the trivial one.
 **Theorem** [Kulkarni, Livesay, Matherne, Nguyen and Sage, Adv. Math. 408 (2022)]: there is a connection with a
 maximally ramified pole of slope r/n and at most one further pole, a log pole with residue in the class L, if and only
 if the Fuchs relation holds and every eigenvalue of L has at most r Jordan blocks.  (Without log pole L = 0, n blocks.)
+The statement is given from memory; the tests hold it against known types, the dimension count, and numerical points.
 
 Read it as a statement on residues: *those that occur at the maximally ramified pole are the matrices of the right
 trace all of whose eigenspaces have dimension r or less*; the set is stable under conjugation, so single matrices may

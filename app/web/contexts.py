@@ -206,9 +206,13 @@ class HistoryContext:
 
 @dataclass(frozen=True)
 class LeadsContext:
-    """What goes along to the pages of operations, descent and connection: the problem as a document."""
+    """What goes along to the pages of operations, descent and connection: the problem as a document.
+
+    ``ramified``: the quiver's operations and the descent are not offered.
+    """
 
     document: str
+    ramified: bool
 
 
 @dataclass(frozen=True)
@@ -351,15 +355,15 @@ def _scheme_entry(problem: Problem, block: Block) -> SchemeEntry:
 
 
 def leads_context(findings: Findings) -> LeadsContext | None:
-    """What leads from the desk to other pages; None for ramified data and for problems too large for those.
+    """What leads from the desk to other pages; None for problems too large for those.
 
     Cost: one canonical text.
     """
     eigenvalues = sum(len(block.residue) for pole in findings.problem.poles for block in pole.blocks)
-    if findings.quiver is None or eigenvalues > DOCUMENT_CARRIED // _SHORTEST_EIGENVALUE:
+    if eigenvalues > DOCUMENT_CARRIED // _SHORTEST_EIGENVALUE:
         return None
     document = canonical_text(findings.problem)
-    return LeadsContext(document) if len(document) <= DOCUMENT_CARRIED else None
+    return LeadsContext(document, findings.problem.ramified) if len(document) <= DOCUMENT_CARRIED else None
 
 
 def descent_context(findings: Findings) -> DescentContext | None:

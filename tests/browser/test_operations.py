@@ -44,3 +44,24 @@ def test_matrices_come_with_their_record(desk: Desk) -> None:
     assert "Accessory parameters" in text and "tangent dimension" in text
     assert desk.page.locator("math").count() >= 4
     assert desk.complaints == []
+
+
+def test_ramified_data_lead_to_a_numerical_point(desk: Desk) -> None:
+    desk.read_type("(1)_1/2(1)_0,111")
+    assert "not decided" in desk.page.inner_text("#findings")
+    assert desk.page.get_by_role("button", name="Play the descent step by step").count() == 0
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Construct matrices").click()
+    desk.page.get_by_text("Verification record").wait_for()
+    text = desk.page.inner_text("main")
+    assert "numerical evidence, not a proof" in text
+
+
+def test_whole_operations_and_closures_of_ramified_data(desk: Desk) -> None:
+    desk.read_type("(1)_3/2")
+    for button, heading in (("Operations on the whole problem", "whole problem"), ("Walls and closures", "Walls")):
+        with desk.page.expect_navigation():
+            desk.page.get_by_role("button", name=button).click()
+        assert heading in desk.page.inner_text("h1")
+        desk.open()
+    assert desk.complaints == []

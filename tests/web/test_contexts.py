@@ -295,6 +295,11 @@ def test_what_leads_to_other_pages_is_the_problem_itself():
     assert leads is not None and read_document(leads.document) == problem
 
 
-@pytest.mark.parametrize("shorthand", ["(1)_3/2", ",".join(["1^60"] * 10), "1^300,1^300,299 1"])
-def test_nothing_leads_on_from_large_and_ramified_problems(shorthand):
+def test_what_leads_on_from_ramified_data_says_that_they_are_ramified():
+    leads = leads_context(examine(problem_from_shorthand("(1)_3/2")))
+    assert leads is not None and leads.ramified
+
+
+@pytest.mark.parametrize("shorthand", [",".join(["1^60"] * 10), "1^300,1^300,299 1"])
+def test_nothing_leads_on_from_large_problems(shorthand):
     assert leads_context(examine(problem_from_shorthand(shorthand))) is None
