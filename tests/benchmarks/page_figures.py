@@ -3,20 +3,19 @@
 import json
 import re
 import tempfile
-import time
 from pathlib import Path
 
 from starlette.testclient import TestClient
 
 from app.web.application import Settings, create_application
-from tests.benchmarks.timing import Figure, percentile, show
+from tests.benchmarks.timing import Figure, Time, percentile, show, timed
 
 TYPES = {"rank 3": "21,111,111", "rank 6": "1^6,1^6,51", "rank 100, 1,200 eigenvalues": ",".join(["1^100"] * 12)}
 TARGETS = {"rank 3": 0.04, "rank 6": 0.04, "rank 100, 1,200 eigenvalues": 0.15}
 
 
-def edit_times(shorthand: str, count: int) -> list[float]:
-    """Seconds of single edits of one eigenvalue after another; the page's marks are kept as a browser keeps them."""
+def edit_times(shorthand: str, count: int) -> list[Time]:
+    """Times of single edits of one eigenvalue after another; the page's marks are kept as a browser keeps them."""
     with tempfile.TemporaryDirectory() as folder:
         application = create_application(Settings(data=Path(folder)))
         with TestClient(application, base_url="http://127.0.0.1:8400") as client:
@@ -33,10 +32,9 @@ def edit_times(shorthand: str, count: int) -> list[float]:
                     "revision": str(answer["revision"]),
                     "shown": json.dumps(marks),
                 }
-                begun = time.perf_counter()
-                response = client.post(target, data=data, headers=headers)
-                found.append(time.perf_counter() - begun)
-                answer = response.json()
+                responses = []
+                found.append(timed(lambda: responses.append(client.post(target, data=data, headers=headers))))  # noqa: B023
+                answer = responses[0].json()
                 marks.update({name: fragment["mark"] for name, fragment in answer["fragments"].items()})
             return found[1:]
 
