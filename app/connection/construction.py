@@ -237,10 +237,9 @@ def _direct(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -
 
 def _point_on_orbits(special: Problem, seed: int, progress: Progress) -> "Point":
     """A numerical point on the orbits of a problem without symbols, for every formal type."""
-    from app.connection.normal_form import normal_form
-    from app.connection.numerical_point import find_tuple
+    from app.connection.numerical_point import find_point_at
 
-    return find_tuple([normal_form(pole) for pole in special.poles], seed, progress)
+    return find_point_at(special.poles, seed, progress)
 
 
 def _ramified(problem: Problem, verdict: Verdict, seed: int, progress: Progress) -> Construction:
@@ -267,7 +266,13 @@ def _ramified(problem: Problem, verdict: Verdict, seed: int, progress: Progress)
     conclusion = "A theorem proves existence all the same." if verdict.exists else "This decides nothing."
     if best is not None:
         return _noted(best, f"No point that passes all checks was found in {starts} starts. {conclusion}")
-    missed = _not_found(problem, verdict, f"Nothing was found in {starts} starts", residual, _RAMIFIED_SEARCH)
+    missed = _not_found(
+        problem,
+        verdict,
+        f"Nothing was found in {starts} {'start' if starts == 1 else 'starts'}",
+        residual,
+        _RAMIFIED_SEARCH,
+    )
     return replace(missed, note=f"{missed.note} {conclusion}")
 
 

@@ -98,6 +98,12 @@ def _add_orbit(
             form[turns, start + row, start + k] += scalar
 
 
+def coordinate_scale(pole: Pole) -> float:
+    """The largest c such that after z → z/c no leading coefficient of z dq/dz exceeds 1 in absolute value; 1 if log."""
+    leading = [block.exponent.terms[0] for block in pole.blocks if not block.exponent.is_zero]
+    return min((abs(floating(value * power)) ** float(-1 / power) for power, value in leading), default=1.0)
+
+
 def stage_normal_form(blocks: tuple[StageBlock, ...]) -> NormalForm:
     """The normal form of a pole of a stage, all of whose blocks are unramified and without symbols."""
     spaces: list[tuple[range, bool]] = []

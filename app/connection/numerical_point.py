@@ -11,14 +11,15 @@ none found proves nothing.
 """
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from app.connection.float_matrix import Array, FloatMatrix, floating
-from app.connection.normal_form import NormalForm, stage_normal_form
+from app.connection.normal_form import NormalForm, coordinate_scale, normal_form, stage_normal_form
 from app.connection.stages import Stage
+from app.local.formal_type import Pole
 from app.progress import Progress
 
 STARTS = 8
@@ -70,6 +71,31 @@ def find_tuple(
     if best is None:
         raise ValueError("at least one start is needed")
     return _point(best, starts, False)
+
+
+def find_point_at(poles: Sequence[Pole], seed: int, progress: Progress, starts: int = STARTS) -> Point:
+    """A point on the orbits of formal types without symbols, ramified or not, residues adding up to 0.
+
+    The residues know nothing of the local coordinates, so every ramified pole has a scale of its own: with z = c·u the
+    coefficient k is multiplied by c^(−k).  It is chosen such that no leading coefficient of z dq/dz exceeds 1; far from
+    there Newton's method creeps along the orbits.
+    """
+    normal, scales = [], []
+    for pole in poles:
+        own = normal_form(pole)
+        scales.append(coordinate_scale(pole) if pole.ramified else 1.0)
+        normal.append(replace(own, form=_scaled(own.form, scales[-1])))
+    found = find_tuple(normal, seed, progress, starts)
+    parts = tuple(
+        tuple(FloatMatrix(matrix.array * scale**-k) for k, matrix in enumerate(part))
+        for part, scale in zip(found.parts, scales, strict=True)
+    )
+    return replace(found, parts=parts)
+
+
+def _scaled(form: Array, scale: float) -> Array:
+    powers = np.power(scale, np.arange(len(form)))
+    return np.asarray(form * powers[:, None, None], dtype=np.complex128)
 
 
 def _point(found: tuple[float, list[Array]], starts: int, converged: bool) -> Point:

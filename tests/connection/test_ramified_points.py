@@ -8,11 +8,12 @@ import numpy as np
 import pytest
 
 from app.__main__ import main
+from app.connection import construction
 from app.connection.connection import floating_parts
 from app.connection.construction import construct
 from app.connection.document import connection_from_json
 from app.connection.normal_form import normal_form
-from app.connection.numerical_point import find_tuple
+from app.connection.numerical_point import find_point_at
 from app.connection.verification import problem_at, verify
 from app.connection.verification_ramified import ramified_class_check
 from app.exact.value import Value
@@ -36,7 +37,12 @@ PROVED = {
     "degenerate Painlevé V": ("(1)_1/2,11,11", 2),
     "hypergeometric 0F2": ("(1)_1/3,111", 0),
 }
-OPEN = {"1F2": "(1)_1/2(1)_0,111", "two levels": "((1)_1(1)_1)_3/2", "rank 3, four-dimensional": "(1)_1/2(1)_0,111,21"}
+OPEN = {
+    "1F2": "(1)_1/2(1)_0,111",
+    "1F3": "(1)_1/3(1)_0,1^4",
+    "two levels": "((1)_1(1)_1)_3/2",
+    "rank 3, four-dimensional": "(1)_1/2(1)_0,111,21",
+}
 
 
 @pytest.mark.parametrize("name", PROVED)
@@ -86,12 +92,23 @@ def test_a_scalar_residue_is_not_met():
     problem = problem_from_shorthand("(1)_1/2,2")
     special = problem_at(problem, {name: value_of(k) for k, name in enumerate(problem.symbols)})
     assert not special.trace_sum
-    point = find_tuple([normal_form(pole) for pole in special.poles], 0, Unlimited(), starts=1)
+    point = find_point_at(special.poles, 0, Unlimited(), starts=1)
     assert not point.converged
 
 
 def value_of(number):
     return Value.rational(Fraction(number + 2, 7 + 2 * number))
+
+
+def test_a_search_without_success_decides_nothing(monkeypatch):
+    """Whether a system of this type exists is open here; one short search, which finds none."""
+    monkeypatch.setattr(construction, "_ATTEMPTS", 1)
+    monkeypatch.setattr(
+        construction, "_point_on_orbits", lambda special, seed, progress: find_point_at(special.poles, 0, progress, 1)
+    )
+    built = construct(problem_from_shorthand("(1)_1/2(11)_0,31,31"))
+    assert built.exists is None and built.connection is None
+    assert "Nothing was found in 1 start;" in built.note and "decides nothing" in built.note
 
 
 def mixed(first, second, *log):
