@@ -15,10 +15,12 @@ So the trace of the residue is tr Λ + m(e − 1)/2, and with ξ the sum of the 
 Λ = ξ − (e − 1)/2.  Other lattices of the chain differ by an integer in Λ; the given ξ is what fixes the lattice.
 
 A pole's lattice is the direct sum of the lattices of its blocks, and its *orbit* consists of the principal parts of
-g Λ g^(−1), g ∈ GL_n(C[z]/z^(r+1)).  The parahoric subgroup that preserves the chain is not enlarged in any other way:
-for one Galois orbit of multiplicity 1 and slope s = p/e in lowest terms, all functionals that restrict to its orbit
-under the parahoric subgroup lie in one such GL_n-orbit [compare Bremer and Sage, Int. Math. Res. Notices (2013)].
-In every case ``orbit_defect`` compares the dimension of this orbit with Irr(End) + n² − dim Inv.
+g Λ g^(−1), g ∈ GL_n(C[z]/z^(r+1)): gauges of the trivial lattice, not those alone that preserve the whole chain (the
+parahoric subgroup).  For one Galois orbit of multiplicity 1 and slope p/e in lowest terms nothing depends on this: the
+functionals on gl_n(C[[z]]) that restrict to the parahoric orbit of Λ are all conjugate under the parahoric subgroup,
+since [X, Λ] meets every term behind the residue that GL_n sees [own argument; the setting is that of Bremer and Sage,
+Int. Math. Res. Notices (2013)].  In general ``orbit_defect`` compares the dimension of this orbit with
+Irr(End) + n² − dim Inv; tests find them equal for ramified blocks of several levels, multiplicities and mixtures.
 """
 
 from collections.abc import Sequence

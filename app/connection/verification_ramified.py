@@ -1,12 +1,14 @@
 """Whether a floating principal part lies on the orbit of a ramified normal form.
 
-Sought are gauges g modulo z^(r+1) with A g = g Λ as principal parts: a linear system.  Its solutions have the
-dimension of the stabiliser of Λ, n²(r + 1) − dim O, exactly if A and Λ are about equally special, and A lies on the
-orbit exactly if an invertible one is among them; a random one is then.  Checked are thus: the gap of the singular
-values at that dimension, the condition of a drawn gauge at z = 0, and what A g − g Λ leaves.
+Sought are gauges g modulo z^(r+1) with A g = g Λ as principal parts: a linear system.  If A lies on the orbit, its
+solutions are one gauge times the stabiliser of Λ: their dimension is n²(r + 1) − dim O, and a random one is invertible.
+Conversely one invertible solution puts A on the orbit.  Checked are thus the gap of the singular values at that
+dimension, and the condition at z = 0 of a gauge drawn among the solutions.
 
-This settles the whole formal type at the pole, in the lattice that ``normal_form`` describes: principal parts on this
-orbit are determined up to terms that the chain of lattices puts behind the residue, and these do not change the type.
+This settles the whole formal type at the pole, in the lattice that ``normal_form`` describes.  For give the frame
+vector w^(−k) the degree −k/e and z the degree 1: then the holomorphic terms, of which a principal part says nothing,
+have positive degree, and all of Λ has degree 0 or less.  Terms of positive degree are gauged away degree by degree,
+as at a log pole, unless two values of one block differ by a non-zero integer (resonance).
 """
 
 from collections.abc import Sequence
