@@ -1,11 +1,14 @@
 """Every demo problem is in canonical form and shows what it is meant to show."""
 
 from dataclasses import dataclass
+from itertools import product
 from pathlib import Path
 
 import pytest
 
-from app.existence.check import check
+from app.existence.check import Check, check
+from app.existence.check_ramified import check_ramified
+from app.existence.verdict import Verdict
 from app.findings.findings import Findings, examine
 from app.local.document import read_document
 from app.local.writer import canonical_text
@@ -51,6 +54,13 @@ def findings_of(name: str) -> Findings:
     return examine(read_document((FOLDER / f"{name}.json").read_bytes()))
 
 
+def claims_of(findings: Findings, verdict: Verdict) -> tuple[Check, ...]:
+    """The claims of a verdict's certificate, worked out again."""
+    if verdict.ramified is not None:
+        return check_ramified(findings.problem, verdict.ramified, verdict.exists)
+    return check(verdict)
+
+
 def test_every_demo_is_described_here_and_has_a_name_of_its_own() -> None:
     assert [file.stem for file in FILES] == list(MEANT)
     problems = [read_document(file.read_bytes()) for file in FILES]
@@ -73,7 +83,9 @@ def test_the_demo_shows_what_it_is_meant_to_show(name: str) -> None:
     assert decisive is not None
     assert getattr(decisive.certificate, "criterion", "") == meant.how
     for verdict in (findings.additive, findings.multiplicative):
-        assert verdict is None or all(one.holds for one in check(verdict))
+        if verdict is not None:
+            claims = claims_of(findings, verdict)
+            assert claims and all(one.holds for one in claims)
 
 
 def test_single_points_of_the_scenario() -> None:
@@ -81,6 +93,15 @@ def test_single_points_of_the_scenario() -> None:
     assert "Airy equation" in [family.name for family in findings_of("16-the-light-at-the-cape").families]
     painleve = [findings_of(name).families[0].name for name in list(MEANT)[:5]]
     assert painleve == ["Painlevé VI", "Painlevé V", "Painlevé IV", "Painlevé II", "Painlevé III(D6)"]
+
+
+def test_the_resonances_that_separate_system_and_monodromy() -> None:
+    """The three values 3/10, 9/20 and −7/4 sum to −1: no obstacle to a system, and one to its monodromy."""
+    findings = findings_of("17-resonant-buoys")
+    poles = findings.problem.poles
+    values = [[e.value.as_rational() for e in pole.blocks[0].residue] for pole in poles]
+    sums = [sum(chosen) for chosen in product(*values)]  # type: ignore[arg-type]
+    assert 0 not in sums and any(value.denominator == 1 for value in sums)
 
 
 def test_the_wall_is_left_when_the_value_moves() -> None:
