@@ -18,6 +18,7 @@ from dataclasses import replace
 from app.connection.connection import Check, Connection
 from app.errors import OutOfTime, Place, Refused
 from app.exact.value import Value
+from app.local.conjugates import conjugates
 from app.local.formal_type import Block, Eigenvalue, Exponent, Pole, Position
 from app.local.problem import Problem
 from app.progress import Progress
@@ -82,8 +83,8 @@ def unassigned(problem: Problem) -> tuple[str, ...]:
 def problem_at(problem: Problem, values: dict[str, Value]) -> Problem:
     """The problem with constants in place of symbols.
 
-    Raises Refused where eigenvalues, exponents or positions that were distinct become equal: then the values are not
-    values of this problem.
+    Raises Refused where eigenvalues, exponents (up to conjugation) or positions that were distinct become equal, or a
+    ramification index falls: then the values are not values of this problem.
     """
     if not values:
         return problem
@@ -91,8 +92,10 @@ def problem_at(problem: Problem, values: dict[str, Value]) -> Problem:
     for number, pole in enumerate(problem.poles):
         at = Position(None if pole.at.value is None else pole.at.value.substitute(values))
         blocks = tuple(_block_at(block, values, f"/poles/{number}/blocks/{j}") for j, block in enumerate(pole.blocks))
-        if len({block.exponent for block in blocks}) < len(blocks):
-            _refuse_equal("exponents", f"/poles/{number}/blocks")
+        # one conjugate stands for a whole Galois orbit; two orbits are equal or disjoint
+        for j, block in enumerate(blocks):
+            if any(conjugates(block.exponent)[0] in conjugates(other.exponent) for other in blocks[:j]):
+                _refuse_equal("exponents", f"/poles/{number}/blocks")
         poles.append(Pole(at, blocks))
     if len({pole.at for pole in poles}) < len(poles):
         _refuse_equal("positions", "/poles")
@@ -105,7 +108,12 @@ def _block_at(block: Block, values: dict[str, Value], at: str) -> Block:
     residue = tuple(Eigenvalue(e.value.substitute(values), e.jordan) for e in block.residue)
     if len({eigenvalue.value for eigenvalue in residue}) < len(residue):
         _refuse_equal("eigenvalues", f"{at}/residue")
-    return Block(Exponent(tuple(term for term in terms if term[1])), residue)
+    exponent = Exponent(tuple(term for term in terms if term[1]))
+    if exponent.ramification != block.exponent.ramification:
+        message = "Under these values the ramification index of an exponent falls"
+        place = Place(f"{at}/exponent", message, "values that keep coefficients of fractional powers different from 0")
+        raise Refused(f"{message} (at {at}).", (place,))
+    return Block(exponent, residue)
 
 
 def _refuse_equal(what: str, at: str) -> None:

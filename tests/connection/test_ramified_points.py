@@ -16,6 +16,7 @@ from app.connection.normal_form import normal_form
 from app.connection.numerical_point import find_point_at
 from app.connection.verification import problem_at, verify
 from app.connection.verification_ramified import ramified_class_check
+from app.errors import Refused
 from app.exact.value import Value
 from app.existence.problems import additive_verdict
 from app.jobs.tasks import construct_connection
@@ -159,6 +160,19 @@ def test_a_higher_order_fails_the_record():
     higher = dataclasses.replace(pole, coefficients=(*pole.coefficients, pole.coefficients[1]))
     record = verify(problem, dataclasses.replace(connection, poles=(higher,)), Unlimited())
     assert not record[1].holds
+
+
+@pytest.mark.parametrize(
+    ("values", "words"),
+    [({"u1": 1, "u2": -1}, "exponents become equal"), ({"u1": 0, "u2": 1}, "ramification index")],
+)
+def test_values_that_change_the_formal_type_are_refused(values, words):
+    """z^(−1/2) and −z^(−1/2) are conjugate; with coefficient 0 nothing is ramified."""
+    problem = problem_from_shorthand("(1)_1/2(1)_1/2,1111,31")
+    assert {"u1", "u2"} <= set(problem.symbols)
+    with pytest.raises(Refused, match=words):
+        problem_at(problem, {name: Value.rational(value) for name, value in values.items()})
+    problem_at(problem, {"u1": Value.rational(1), "u2": Value.rational(2)})
 
 
 def test_deterministic():
