@@ -9,9 +9,10 @@ import pytest
 
 from app.__main__ import main
 from app.connection import construction
-from app.connection.connection import floating_parts
+from app.connection.connection import Connection, floating_parts, poles_of
 from app.connection.construction import construct
 from app.connection.document import connection_from_json
+from app.connection.generic_values import generic_values
 from app.connection.normal_form import normal_form
 from app.connection.numerical_point import find_point_at
 from app.connection.verification import problem_at, verify
@@ -99,6 +100,25 @@ def test_a_scalar_residue_is_not_met():
 
 def value_of(number):
     return Value.rational(Fraction(number + 2, 7 + 2 * number))
+
+
+BESIDE = {
+    2: ["", "11", "2", "11,11", "(1)(1)", "11,2", "(1)_1/2"],
+    3: ["", "21", "111", "3", "21,21", "111,21", "(1)(1)(1)", "(11)(1)", "(2)(1)", "(1)_1/3"],
+}
+
+
+@pytest.mark.parametrize("maximal", ["(1)_1/2", "(1)_3/2", "(1)_1/3", "(1)_2/3", "(1)_4/3"])
+def test_the_search_agrees_with_the_theorem(maximal):
+    """One maximally ramified pole: a verified point is found exactly where the verdict says that a system exists."""
+    for other in BESIDE[problem_from_shorthand(maximal).rank]:
+        problem = problem_from_shorthand(f"{maximal},{other}" if other else maximal)
+        verdict = additive_verdict(problem, None, None)
+        special = problem_at(problem, generic_values(problem.symbols, 0))
+        point = find_point_at(special.poles, 0, Unlimited(), starts=6 if verdict.exists else 1)
+        poles = poles_of([pole.at for pole in special.poles], point.parts)
+        record = verify(special, Connection("numerical", special.rank, poles), Unlimited())
+        assert all(check.holds for check in record) == (verdict.status == "proved"), (other, verdict.reason)
 
 
 def test_a_search_without_success_decides_nothing(monkeypatch):
