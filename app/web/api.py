@@ -15,7 +15,8 @@ from starlette.responses import Response
 from app.errors import Place, Refused
 from app.findings.findings import examine_cached
 from app.findings.schema import NAMES, schema
-from app.local.document import parse_json, problem_from_json
+from app.local.document import problem_from_json
+from app.local.json_reader import read_json
 from app.local.problem import Problem
 from app.local.shorthand import problem_from_shorthand
 
@@ -79,9 +80,10 @@ def problem_in(body: bytes) -> Problem:
 
     Raises Malformed, Refused, TooLarge.
     """
-    data = parse_json(body)
+    data, faults = read_json(body)
     if not (isinstance(data, dict) and data.keys() == {"type"}):
-        return problem_from_json(data)
+        return problem_from_json(data, faults)
+    faults.raise_if_any()
     shorthand = data["type"]
     if not isinstance(shorthand, str):
         place = Place("/type", "A shorthand is a text", 'for example "21,111,111"')

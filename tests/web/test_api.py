@@ -139,3 +139,10 @@ def test_a_document_of_the_largest_rank(client):
     assert response.status_code == 200
     assert response.json()["rank"] == 400
     assert read_document(canonical_text(problem_from_shorthand("1^400,1^400,[399]1"))).rank == 400
+
+
+def test_faults_of_text_and_content_come_together(client):
+    body = '{"format": "polewright-problem/1", "name": 7, "symbols": [], "symbols": [], "poles": []}'
+    places = [place["at"] for place in client.post("/api/examine", content=body).json()["error"]["places"]]
+    assert {"/symbols", "/name", "/poles"} <= set(places)
+    assert client.post("/api/examine", content='{"type": "11,11", "type": "1,1"}').status_code == 422
