@@ -10,7 +10,7 @@ from fractions import Fraction
 
 from app.connection.connection import Connection, Entry, Rows
 from app.connection.document import write_entry
-from app.exact.factored import latex_factored
+from app.exact.factored import common_factor, latex_factored
 from app.exact.latex import latex
 from app.exact.quotient import Quotient
 from app.exact.value import Value
@@ -31,9 +31,18 @@ def connection_latex(connection: Connection) -> str:
 
 
 def matrix_latex(matrix: Rows, symbols: Sequence[str] = ()) -> str:
-    """The LaTeX of one matrix."""
+    """The LaTeX of one matrix; a factor that all its exact entries share stands before it."""
+    exact = [entry for row in matrix for entry in row if isinstance(entry, Quotient)]
+    before = ""
+    if exact and (shared := common_factor(exact)) != Quotient.of(1):
+        before = latex_factored(shared, symbols)
+        if len(shared.numerator.terms) > 1 and shared.is_polynomial and not before.startswith(r"\left("):
+            before = rf"\left({before}\right)"
+        matrix = tuple(
+            tuple(entry / shared if isinstance(entry, Quotient) else entry for entry in row) for row in matrix
+        )
     rows = [" & ".join(entry_latex(entry, symbols) for entry in row) for row in matrix]
-    return r"\begin{pmatrix} " + r" \\ ".join(rows) + r" \end{pmatrix}"
+    return before + r"\begin{pmatrix} " + r" \\ ".join(rows) + r" \end{pmatrix}"
 
 
 def entry_latex(entry: Entry, symbols: Sequence[str] = ()) -> str:

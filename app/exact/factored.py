@@ -5,11 +5,12 @@ Nothing is decided by them.  A value with square roots is left whole.
 
 from collections.abc import Sequence
 from fractions import Fraction
+from math import gcd, lcm
 
 from app.exact.latex import latex
 from app.exact.polynomial_kernel import common_denominator, variables_of
 from app.exact.quotient import Quotient
-from app.exact.value import Value
+from app.exact.value import ONE, Value
 from app.exact.writing import ordered_terms
 
 
@@ -42,6 +43,38 @@ def factored(value: Value) -> tuple[Fraction, tuple[tuple[Value, int], ...]]:
         found.append((factor, int(multiplicity)))
     found.sort(key=lambda pair: (len(pair[0].terms), repr(pair[0])))
     return whole, tuple(found)
+
+
+def common_factor(numbers: Sequence[Quotient]) -> Quotient:
+    """The factor that all non-zero numbers share: rational content, numerators' and denominators' common factors.
+
+    Its sign is positive; 1 where nothing is shared or there are fewer than two non-zero numbers.  Cost: a factorisation
+    of every numerator and denominator.
+
+    >>> a = Value.symbol("a")
+    >>> common_factor([Quotient(a * 2, a + 1), Quotient(a * a * 4, a + 1)]) == Quotient(a * 2, a + 1)
+    True
+    """
+    present = [number for number in numbers if number]
+    if len(present) < 2:
+        return Quotient(ONE)
+    above = [factored(number.numerator) for number in present]
+    below = [factored(number.denominator) for number in present]
+    contents = [top / bottom for (top, _), (bottom, _) in zip(above, below, strict=True)]
+    content = Fraction(gcd(*(c.numerator for c in contents)), lcm(*(c.denominator for c in contents)))
+    return Quotient(_shared([f for _, f in above]) * content, _shared([f for _, f in below]))
+
+
+def _shared(lists: Sequence[tuple[tuple[Value, int], ...]]) -> Value:
+    """The product of the factors that stand in every list, with the least multiplicity."""
+    shared = dict(lists[0])
+    for factors in lists[1:]:
+        known = dict(factors)
+        shared = {factor: min(power, known[factor]) for factor, power in shared.items() if factor in known}
+    product = ONE
+    for factor, power in shared.items():
+        product = product * factor**power
+    return product
 
 
 def latex_factored(number: Quotient, symbols: Sequence[str] = ()) -> str:
