@@ -30,6 +30,7 @@ LONGEST_QUEUE = 20
 KEPT = 100
 DEFAULT_LIMIT = 60.0
 _TASKS_OF_A_WORKER = 50
+_LINES_KEPT = 40
 
 Report = tuple[str, str, float | None]
 
@@ -38,7 +39,8 @@ Report = tuple[str, str, float | None]
 class Job:
     """One job: what, with which input, state, progress in words and as a part of 1, result or why there is none.
 
-    ``given`` and ``result`` are JSON texts.
+    ``given`` and ``result`` are JSON texts; ``lines`` are the last reports, with seconds since the beginning, and stay
+    when a job is stopped or killed.
     """
 
     id: str
@@ -48,6 +50,7 @@ class Job:
     begun: float
     limit: float
     progress: str = ""
+    lines: tuple[str, ...] = ()
     fraction: float | None = None
     result: str | None = None
     message: str = ""
@@ -143,7 +146,12 @@ class Jobs:
     def _listen(self, reports: "SimpleQueue[Report | None]") -> None:
         while (report := reports.get()) is not None:
             job_id, text, fraction = report
-            self._change(job_id, state="running", progress=text, fraction=fraction)
+            with self._lock:
+                job = self._jobs.get(job_id)
+            if job is not None:
+                line = f"{time.time() - job.begun:.1f} s: {text}"
+                lines = (*job.lines, line)[-_LINES_KEPT:]
+                self._change(job_id, state="running", progress=text, fraction=fraction, lines=lines)
 
     def _change(self, job_id: str, **changes: object) -> None:
         """Change a job that has not ended."""

@@ -3,6 +3,7 @@
     POST /connection              a problem document: values for symbols, generic values, or a construction begun
     GET  /connection/{job}        its progress, then its matrices and checks
     POST /connection/{job}/stop   stop it
+    POST /connection/{job}/convolve   mc_μ of a finished construction
 
 A construction is a job; its page refreshes itself until the job has ended, without any script.
 """
@@ -10,12 +11,13 @@ A construction is a job; its page refreshes itself until the job has ended, with
 import json
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
 
 from fastapi import APIRouter, Request
 from markupsafe import Markup
 from starlette.responses import HTMLResponse, RedirectResponse, Response
 
-from app.errors import NumberFault, Refused
+from app.errors import NumberFault, Place, Refused
 from app.exact.number import parse_number, write_number
 from app.exact.value import Value
 from app.jobs.pool import Job, Jobs
@@ -26,6 +28,9 @@ from app.web.forms import read_post
 from app.web.mathematics import mathml
 from app.web.rendering import page, render
 from app.web.views import is_large
+
+if TYPE_CHECKING:
+    from app.connection.connection import Connection
 
 router = APIRouter()
 _LONGEST_FORMULA = 60_000
@@ -120,6 +125,38 @@ async def stop(request: Request, job_id: str) -> Response:
     return RedirectResponse(f"/connection/{job_id}", status_code=303)
 
 
+@router.post("/connection/{job_id}/convolve")
+async def convolve(request: Request, job_id: str) -> Response:
+    """The middle convolution of a finished construction's connection."""
+    post = await read_post(request)
+
+    def work() -> Response:
+        job = _jobs(request).job(job_id)
+        record = json.loads(job.result or "{}")
+        if job.state != "done" or record.get("connection") is None:
+            raise Refused("There is no connection to convolve.")
+        found = _convolved(record["connection"], post.fields.get("mu", ""))
+        return page("convolved.html", large=is_large(request), found=found, job_id=job_id)
+
+    response: Response = await request.app.state.work.run(work)
+    return response
+
+
+def _convolved(written: Mapping[str, Any], typed: str) -> ConnectionContext:
+    from app.connection.convolved import convolved
+    from app.connection.document import connection_document, connection_from_json
+
+    connection = connection_from_json(written)
+    try:
+        mu = parse_number(typed, set(connection.symbols))
+    except NumberFault as fault:
+        raise Refused(f"μ cannot be read: {fault.message}.", (Place("mu", fault.message, fault.expected),)) from fault
+    moved = convolved(connection, mu)
+    method = f"Middle convolution with μ = {write_number(mu)} of the connection shown before; rank {moved.rank}."
+    note = "It has no record of checks of its own."
+    return _context(moved, dict(connection_document(moved)), method, note, False)
+
+
 def _jobs(request: Request) -> Jobs:
     jobs: Jobs = request.app.state.jobs
     return jobs
@@ -162,9 +199,16 @@ def _result(job: Job) -> ConnectionContext:
     if record["connection"] is None:
         return ConnectionContext(record["method"], record["note"], "", False, (), (), (), (), ())
     from app.connection.document import connection_from_json
-    from app.connection.writing import connection_latex, matrix_latex, numpy_source, sympy_source
 
     connection = connection_from_json(record["connection"])
+    return _context(connection, record["connection"], record["method"], record["note"], record["verified"])
+
+
+def _context(
+    connection: "Connection", written: Mapping[str, Any], method: str, note: str, verified: bool
+) -> ConnectionContext:
+    from app.connection.writing import connection_latex, matrix_latex, numpy_source, sympy_source
+
     coefficients = []
     for pole in connection.poles:
         place = "∞" if pole.at.value is None else write_number(pole.at.value, connection.symbols)
@@ -175,17 +219,15 @@ def _result(job: Job) -> ConnectionContext:
     copies = [("LaTeX", connection_latex(connection)), ("Python source for numpy", numpy_source(connection))]
     if connection.kind == "exact":
         copies.append(("Python source for sympy", sympy_source(connection)))
-    copies.append(("JSON", json.dumps(record["connection"], ensure_ascii=False)))
+    copies.append(("JSON", json.dumps(written, ensure_ascii=False)))
     return ConnectionContext(
-        method=record["method"],
-        note=record["note"],
+        method=method,
+        note=note,
         kind=connection.kind,
-        verified=record["verified"],
+        verified=verified,
         accessory=connection.accessory,
         values=tuple((name, write_number(value)) for name, value in connection.values),
         coefficients=tuple(coefficients),
-        checks=tuple(
-            (check["check"], check["holds"], check["figure"]) for check in record["connection"]["verification"]
-        ),
+        checks=tuple((check["check"], check["holds"], check["figure"]) for check in written.get("verification", ())),
         copies=tuple(copies),
     )

@@ -112,3 +112,17 @@ def test_the_descent_forward_and_to_the_end(client: TestClient) -> None:
 def test_the_math_font_is_served(client: TestClient) -> None:
     answer = client.get("/fonts/mathematics.ttf")
     assert answer.status_code == 200 and answer.content[:4] in (b"\0\1\0\0", b"OTTO")
+
+
+def test_middle_convolution_of_a_finished_construction(client: TestClient) -> None:
+    """Two finite poles with invertible residues of size 2: mc_μ has rank 4 for generic μ (Dettweiler–Reiter 2007)."""
+    document = canonical_text(problem_from_shorthand("11,11,11"))
+    begun = client.post("/connection", data={"document": document, "action": "construct"}, follow_redirects=False)
+    address = begun.headers["location"]
+    for _ in range(100):
+        if 'http-equiv="refresh"' not in client.get(address).text:
+            break
+        time.sleep(0.1)
+    done = client.post(f"{address}/convolve", data={"mu": "1/2"})
+    assert done.status_code == 200 and "rank 4" in done.text and "<math>" in done.text
+    assert client.post(f"{address}/convolve", data={"mu": "2*"}).status_code == 422
