@@ -3,7 +3,7 @@
     python -m app [serve]            the local web application
     python -m app examine FILE       findings of a problem document, or of JSON Lines of them
     python -m app construct FILE     a connection with the problem's orbits, and its verification record
-    python -m app check FILE         certificates of findings checked against their problem
+    python -m app check FILE         certificates of findings, or a connection, checked against their problem
     python -m app schema NAME        JSON Schema of a document or result
 
 Results go to standard output, everything else to standard error.  Exit status: 0 done, 1 input refused, 2 wrong
@@ -38,6 +38,7 @@ _EXAMPLES = """examples:
   python -m app examine many.jsonl                 one document a line in, one result a line out
   python -m app construct --type 21,111,111        matrices, exact where possible, with their checks
   python -m app check findings-and-problem.json    {"problem": …, "findings": …}
+  python -m app check matrices-and-problem.json    {"problem": …, "connection": …}
   python -m app schema problem                     JSON Schema of a problem document
 """
 
@@ -92,7 +93,7 @@ def _parser() -> argparse.ArgumentParser:
     building.add_argument("--json", action="store_true", help="the connection as JSON")
     building.set_defaults(run=_construct)
 
-    checking = commands.add_parser("check", help="check the certificates of findings against their problem")
+    checking = commands.add_parser("check", help="check findings, or a connection, against their problem")
     checking.add_argument("file", metavar="FILE", help='{"problem": …, "findings": …}; - reads input')
     checking.set_defaults(run=_check)
 
@@ -230,13 +231,28 @@ def _check(given: argparse.Namespace) -> int:
 
     with _opened(given.file) as stream:
         data = parse_json(_rest_of(stream, 0))
-    if not isinstance(data, dict) or set(data) != {"problem", "findings"}:
-        place = Place("", "this is no pair of problem and findings", '{"problem": …, "findings": …}')
-        raise Refused("The file cannot be checked.", (place,))
-    checks = recheck(problem_from_json(data["problem"]), data["findings"])
+    if not isinstance(data, dict) or set(data) not in ({"problem", "findings"}, {"problem", "connection"}):
+        expected = '{"problem": …, "findings": …} or {"problem": …, "connection": …}'
+        raise Refused("The file cannot be checked.", (Place("", "this is no such pair", expected),))
+    problem = problem_from_json(data["problem"])
+    if "connection" in data:
+        return _check_connection(problem, data["connection"])
+    checks = recheck(problem, data["findings"])
     for one in checks:
         print(f"{'holds' if one.holds else 'FAILS'}  {one.claim}{f'  ({one.figure})' if one.figure else ''}")
     return DONE if all(one.holds for one in checks) else REFUSED
+
+
+def _check_connection(problem: "Problem", data: object) -> int:
+    """A verification record made anew for a connection that anybody may have written."""
+    from app.connection.document import connection_from_json
+    from app.connection.verification import verify
+    from app.progress import Unlimited
+
+    record = verify(problem, connection_from_json(data), Unlimited())
+    for one in record:
+        print(f"{'holds' if one.holds else 'FAILS'}  {one.check}: {one.figure}")
+    return DONE if all(one.holds for one in record) else REFUSED
 
 
 def _schema(given: argparse.Namespace) -> int:

@@ -122,3 +122,13 @@ def test_walls_on_request() -> None:
     assert json.loads(run("examine", "--json", "--type", "21,111,111").stdout)["walls"] is None
     refused = run("examine", "--walls", "--json", "--type", "(1)_3/2")
     assert refused.returncode == 1 and "Traceback" not in refused.stderr
+
+
+def test_check_verifies_a_connection_against_its_problem() -> None:
+    connection = json.loads(run("construct", "--json", given=DOCUMENT).stdout)
+    pair = {"problem": json.loads(DOCUMENT), "connection": connection}
+    done = run("check", "-", given=json.dumps(pair))
+    assert done.returncode == 0 and "irreducibility" in done.stdout and "FAILS" not in done.stdout
+    connection["poles"][0]["coefficients"][0][0][0] = "17"
+    done = run("check", "-", given=json.dumps(pair))
+    assert done.returncode == 1 and "FAILS" in done.stdout
