@@ -129,6 +129,7 @@ def test_check_verifies_a_connection_against_its_problem() -> None:
     pair = {"problem": json.loads(DOCUMENT), "connection": connection}
     done = run("check", "-", given=json.dumps(pair))
     assert done.returncode == 0 and "irreducibility" in done.stdout and "FAILS" not in done.stdout
-    connection["poles"][0]["coefficients"][0][0][0] = "17"
+    for pole, change in ((0, "+1"), (1, "-1")):
+        connection["poles"][pole]["coefficients"][0][0][0] += change
     done = run("check", "-", given=json.dumps(pair))
     assert done.returncode == 1 and "FAILS" in done.stdout
