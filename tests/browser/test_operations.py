@@ -65,3 +65,17 @@ def test_whole_operations_and_closures_of_ramified_data(desk: Desk) -> None:
         assert heading in desk.page.inner_text("h1")
         desk.open()
     assert desk.complaints == []
+
+
+def test_texts_are_copied_by_a_button(desk: Desk) -> None:
+    desk.page.context.grant_permissions(["clipboard-read", "clipboard-write"])
+    desk.read_type("11,11,11")
+    with desk.page.expect_navigation():
+        desk.page.get_by_role("button", name="Construct matrices").click()
+    desk.page.get_by_text("Verification record").wait_for()
+    desk.page.locator("summary", has_text="LaTeX").click()
+    desk.page.get_by_role("button", name="Copy LaTeX").click()
+    desk.page.get_by_text("Copied").wait_for()
+    copied = desk.page.evaluate("() => navigator.clipboard.readText()")
+    assert "pmatrix" in copied
+    assert desk.complaints == []
