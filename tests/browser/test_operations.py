@@ -48,7 +48,7 @@ def test_matrices_come_with_their_record(desk: Desk) -> None:
 
 def test_ramified_data_lead_to_a_numerical_point(desk: Desk) -> None:
     desk.read_type("(1)_1/2(1)_0,111")
-    assert "not decided" in desk.page.inner_text("#findings")
+    assert "not decided" in desk.page.inner_text("#findings") and "numerical point" in desk.page.inner_text("#findings")
     assert desk.page.get_by_role("button", name="Play the descent step by step").count() == 0
     with desk.page.expect_navigation():
         desk.page.get_by_role("button", name="Construct matrices").click()
